@@ -1,0 +1,97 @@
+import "server-only";
+import { sql } from "drizzle-orm";
+import { drizzle, type NodePgDatabase } from "drizzle-orm/node-postgres";
+import pg from "pg";
+import type { Ctx, TxCtx } from "@/lib/ctx";
+import type { Result } from "@/lib/base/result";
+import { env } from "@/lib/env";
+
+// Civil days stay text: a JavaScript Date would move them by the machine's zone.
+pg.types.setTypeParser(pg.types.builtins.DATE, (v) => v);
+
+export type Db = NodePgDatabase;
+export type Tx = Parameters<Parameters<Db["transaction"]>[0]>[0];
+
+const kept = globalThis as unknown as { mendbayPool?: pg.Pool };
+
+/** The one pool of this process. */
+export function pool(): pg.Pool {
+  kept.mendbayPool ??= new pg.Pool({ connectionString: env().DATABASE_URL, max: env().PG_POOL_MAX });
+  return kept.mendbayPool;
+}
+
+/** Ends the pool, so that a process may stop and a test may drop its database. */
+export async function closePool(): Promise<void> {
+  await kept.mendbayPool?.end();
+  kept.mendbayPool = undefined;
+}
+
+/**
+ * The database without a role set: for the session reader and migrations alone.
+ * Everything else goes through read and transact.
+ */
+export function rawDb(): Db {
+  return drizzle(pool());
+}
+
+class RolledBack extends Error {
+  constructor(readonly result: Result<unknown>) {
+    super("rolled back by a refusal");
+  }
+}
+
+async function takeRole(tx: Tx, ctx: Ctx): Promise<void> {
+  // Local to the transaction: a setting on the session would leak to the pool's next user.
+  if (ctx.actor.kind === "customer") {
+    await tx.execute(
+      sql`select set_config('role', 'mendbay_portal', true), set_config('mendbay.account', ${ctx.actor.accountId}, true)`,
+    );
+  } else if (ctx.actor.kind === "anonymous") {
+    await tx.execute(
+      sql`select set_config('role', 'mendbay_portal', true), set_config('mendbay.account', '00000000-0000-0000-0000-000000000000', true)`,
+    );
+  } else {
+    await tx.execute(sql`select set_config('role', 'mendbay_staff', true)`);
+  }
+}
+
+/** Runs reads as the actor's database role. Joins the transaction of `ctx` when there is one. */
+export async function read<T>(ctx: Ctx, run: (tx: Tx) => Promise<T>): Promise<T> {
+  if (ctx.tx) return run(ctx.tx);
+  return rawDb().transaction(
+    async (tx) => {
+      await takeRole(tx, ctx);
+      return run(tx);
+    },
+    { accessMode: "read only" },
+  );
+}
+
+/**
+ * Runs a command's body in one transaction as the actor's database role, or joins the one
+ * in `ctx`. A refusal rolls everything back, also what outer commands wrote: when a joined
+ * command's refusal shall not end the outer one, the outer one must ask its rules first.
+ */
+export async function transact<T>(ctx: Ctx, run: (ctx: TxCtx) => Promise<Result<T>>): Promise<Result<T>> {
+  if (ctx.tx) return run(ctx as TxCtx);
+  try {
+    return await rawDb().transaction(async (tx) => {
+      await takeRole(tx, ctx);
+      const result = await run({ ...ctx, tx });
+      if (!result.ok) throw new RolledBack(result);
+      return result;
+    });
+  } catch (thrown) {
+    if (thrown instanceof RolledBack) return thrown.result as Result<T>;
+    throw thrown;
+  }
+}
+
+/** True when `thrown` is PostgreSQL's unique violation of the named constraint or index. */
+export function isUniqueViolation(thrown: unknown, constraint: string): boolean {
+  for (let at: unknown = thrown; at instanceof Error; at = at.cause) {
+    const e = at as Error & { code?: string; constraint?: string };
+    if (e.code === "23505" && e.constraint === constraint) return true;
+  }
+  return false;
+}
