@@ -1,0 +1,69 @@
+import { z } from "zod";
+
+// Lists here become PostgreSQL enums in db/schema/ledger.ts: add at the end, with a migration.
+
+/** Unknown is treated as consumer for fees and wording. */
+export const BUYER_KINDS = ["business", "consumer", "unknown"] as const;
+export type BuyerKind = (typeof BUYER_KINDS)[number];
+
+export const UNIT_KINDS = ["system", "part"] as const;
+export type UnitKind = (typeof UNIT_KINDS)[number];
+
+export const CONDITIONS = ["new", "refurbished"] as const;
+export type Condition = (typeof CONDITIONS)[number];
+
+export const FAMILIES = [
+  "system",
+  "board",
+  "processor",
+  "memory",
+  "drive",
+  "power_supply",
+  "fan",
+  "controller",
+  "network",
+  "riser",
+  "chassis",
+  "battery",
+  "cable",
+] as const;
+export type Family = (typeof FAMILIES)[number];
+
+export const FAMILY_WORDS: Record<Family, string> = {
+  system: "System",
+  board: "Board",
+  processor: "Processor",
+  memory: "Memory",
+  drive: "Drive",
+  power_supply: "Power supply",
+  fan: "Fan",
+  controller: "Storage controller",
+  network: "Network adapter",
+  riser: "Riser, backplane",
+  chassis: "Chassis and rails",
+  battery: "Battery",
+  cable: "Cable",
+};
+
+/** Where a unit is. Equal to what its scans and shipments say. */
+export const WHEREABOUTS = [
+  "customer",
+  "transit",
+  "dock",
+  "bench",
+  "stock",
+  "set_aside",
+  "supplier",
+  "scrapped",
+] as const;
+export type Whereabouts = (typeof WHEREABOUTS)[number];
+
+export const INSTALLATION_SOURCES = ["as_built", "swap"] as const;
+
+export const IMPORT_STATES = ["previewed", "applying", "applied", "failed", "cancelled"] as const;
+export type ImportState = (typeof IMPORT_STATES)[number];
+
+export const CivilDay = z
+  .string()
+  .regex(/^\d{4}-\d{2}-\d{2}$/, "Give a day as year-month-day, such as 2026-03-04.");
+export type CivilDay = z.output<typeof CivilDay>;
