@@ -67,3 +67,64 @@ export const CivilDay = z
   .string()
   .regex(/^\d{4}-\d{2}-\d{2}$/, "Give a day as year-month-day, such as 2026-03-04.");
 export type CivilDay = z.output<typeof CivilDay>;
+
+export type UnitHit = {
+  unitId: string;
+  serial: string;
+  kind: UnitKind;
+  family: Family;
+  modelCode: string;
+  modelName: string;
+  condition: Condition;
+  whereabouts: Whereabouts;
+  place: string | null;
+  accountId: string | null;
+  accountName: string | null;
+  orderNumber: string | null;
+  systemUnitId: string | null;
+  systemSerial: string | null;
+  slot: string | null;
+};
+
+export type Site = {
+  id: string;
+  code: string;
+  name: string;
+  zone: string;
+  addressLines: string[];
+  workdays: number[];
+  opensAt: string;
+  closesAt: string;
+  holidays: string[];
+};
+
+export const SwapPart = z.object({
+  parentUnitId: z.uuid(),
+  slot: z.string().min(1),
+  outUnitId: z.uuid(),
+  inUnitId: z.uuid(),
+  onDay: CivilDay,
+  reason: z.string().min(1),
+});
+export const MoveUnit = z.object({
+  unitId: z.uuid(),
+  whereabouts: z.enum(WHEREABOUTS),
+  place: z.string().max(40).nullish(),
+});
+export const EndSale = z.object({ unitId: z.uuid(), onDay: CivilDay, reason: z.string().min(1) });
+export const ReplaceSystem = z.object({ oldUnitId: z.uuid(), newUnitId: z.uuid(), onDay: CivilDay });
+
+export type ImportView = {
+  id: string;
+  fileName: string;
+  state: ImportState;
+  rowsTotal: number;
+  rowsGood: number;
+  rowsDone: number;
+  added: Record<string, number>;
+  problems: { row: number; column: string | null; message: string }[];
+  problemsTotal: number;
+  error: string | null;
+  createdAt: Date;
+  finishedAt: Date | null;
+};

@@ -50,7 +50,7 @@ describe("cover dates agree with published rules and worked examples", () => {
 });
 
 describe("the claim's day is the day of first receipt in the seller's zone", () => {
-  for (const c of reference.claim_day_cases as Record<string, string>[]) {
+  for (const c of reference.claim_day_cases as unknown as Record<string, string>[]) {
     test(`${c.id}: ${JSON.stringify(c).slice(0, 90)}`, () => {
       const instant = c.claim_instant ?? c.instant ?? c.claim_instant_utc;
       const zone = c.seller_zone ?? c.zone;
