@@ -117,9 +117,13 @@ DO $$ DECLARE t text; BEGIN
 END $$;
 --> statement-breakpoint
 -- Inner notes are in the record, but no customer ever sees one.
-CREATE POLICY own_seen ON entry FOR SELECT TO mendbay_portal USING (account_id = mendbay_account() AND customer_sees);
+-- Read by the ticket's account, not the entry's: a ticket from a stranger finds its account later,
+-- and an entry is never rewritten.
+CREATE POLICY own_seen ON entry FOR SELECT TO mendbay_portal USING (customer_sees AND EXISTS (
+  SELECT FROM ticket t WHERE t.id = ticket_id AND t.account_id = mendbay_account()));
 --> statement-breakpoint
-CREATE POLICY own_written ON entry FOR INSERT TO mendbay_portal WITH CHECK (account_id = mendbay_account());
+CREATE POLICY own_written ON entry FOR INSERT TO mendbay_portal WITH CHECK (EXISTS (
+  SELECT FROM ticket t WHERE t.id = ticket_id AND t.account_id = mendbay_account()));
 --> statement-breakpoint
 ALTER TABLE account ENABLE ROW LEVEL SECURITY;
 --> statement-breakpoint

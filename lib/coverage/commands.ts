@@ -87,16 +87,14 @@ export async function publishTerms(
       .limit(1);
     const versionId = ctx.newId();
     const issue = (last?.issue ?? 0) + 1;
-    await ctx.tx
-      .insert(termsVersions)
-      .values({
-        id: versionId,
-        termsId: of!.id,
-        issue,
-        effectiveOn: v.effectiveOn,
-        note: v.note,
-        createdAt: ctx.now,
-      });
+    await ctx.tx.insert(termsVersions).values({
+      id: versionId,
+      termsId: of!.id,
+      issue,
+      effectiveOn: v.effectiveOn,
+      note: v.note,
+      createdAt: ctx.now,
+    });
     await ctx.tx
       .insert(clauses)
       .values(v.clauses.map((c, sort) => ({ id: ctx.newId(), termsVersionId: versionId, ...c, sort })));

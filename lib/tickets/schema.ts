@@ -1,3 +1,6 @@
+import { z } from "zod";
+import { FAULT_CLASSES } from "../coverage/schema";
+
 // Lists here become PostgreSQL enums in db/schema/tickets.ts: add at the end, with a migration.
 
 export const CHANNELS = ["mail", "portal", "staff"] as const;
@@ -41,3 +44,76 @@ export type EntryKind = (typeof ENTRY_KINDS)[number];
 
 export const TIE_STATES = ["proposed", "tied", "dismissed"] as const;
 export type TieState = (typeof TIE_STATES)[number];
+
+export const OpenTicket = z.object({
+  accountId: z.uuid().nullish(),
+  contactId: z.uuid().nullish(),
+  personName: z.string().trim().max(200).default(""),
+  personEmail: z.email(),
+  channel: z.enum(CHANNELS),
+  subject: z.string().trim().max(500).default(""),
+  faultWords: z.string().trim().max(4000).default(""),
+  receivedAt: z.date(),
+});
+
+export const RecordEntry = z.object({
+  ticketId: z.uuid(),
+  kind: z.enum(ENTRY_KINDS),
+  line: z.string().trim().min(1).max(500),
+  data: z.record(z.string(), z.unknown()).default({}),
+  customerSees: z.boolean().optional(),
+});
+
+export const AddTicketUnit = z.object({
+  ticketId: z.uuid(),
+  unitId: z.uuid(),
+  state: z.enum(TIE_STATES),
+  faultClass: z.enum(FAULT_CLASSES).nullish(),
+  faultWords: z.string().max(4000).default(""),
+  answers: z.record(z.string(), z.string()).default({}),
+});
+
+export const TieUnit = z.object({ ticketId: z.uuid(), unitId: z.uuid() });
+export const TakeDecision = z.object({
+  ticketId: z.uuid(),
+  ticketUnitId: z.uuid(),
+  faultClass: z.enum(FAULT_CLASSES, { error: "Choose what kind of fault it is." }),
+  established: z.array(z.string()).default([]),
+});
+export const Reply = z.object({
+  ticketId: z.uuid(),
+  text: z
+    .string()
+    .trim()
+    .min(2, "Write the answer first.")
+    .max(20_000, "Keep the answer under 20 000 characters."),
+});
+export const AskEvidence = z.object({
+  ticketId: z.uuid(),
+  wanted: z.array(z.string().min(1)).min(1, "Choose at least one thing to ask for."),
+  text: z.string().trim().max(20_000).default(""),
+});
+export const AddNote = z.object({
+  ticketId: z.uuid(),
+  text: z.string().trim().min(1, "Write the note first.").max(10_000),
+});
+export const AttachEvidence = z.object({
+  ticketId: z.uuid(),
+  fileIds: z.array(z.uuid()).min(1).max(60),
+  ticketUnitId: z.uuid().nullish(),
+  source: z.enum(["mail", "portal", "staff", "dock", "bench"]),
+  fromName: z.string().max(200),
+});
+
+export type EntryView = {
+  id: string;
+  ref: string;
+  letter: EntryLetter;
+  kind: EntryKind;
+  at: Date;
+  actorKind: string;
+  actorName: string;
+  customerSees: boolean;
+  line: string;
+  data: Record<string, unknown>;
+};
