@@ -35,7 +35,12 @@ const forbidden = [
     from: {},
     to: { circular: true, viaOnly: { dependencyTypesNot: ["type-only"] } },
   },
-  { name: "nothing-imports-app", severity: "error", from: { pathNot: "^app/" }, to: { path: "^app/" } },
+  {
+    name: "nothing-imports-app",
+    severity: "error",
+    from: { pathNot: "^(app|tests)/" },
+    to: { path: "^app/" },
+  },
   { name: "nothing-imports-tests", severity: "error", from: { pathNot: "^tests/" }, to: { path: "^tests/" } },
   {
     name: "base-is-pure",

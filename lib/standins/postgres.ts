@@ -58,7 +58,7 @@ async function binaries(data: string, say: (line: string) => void): Promise<stri
   return join(ROOT_OF_VERSIONS, String(pick), "bin");
 }
 
-type Person = { uid: number; gid: number } | Record<string, never>;
+type Person = { uid?: number; gid?: number };
 
 /** The server refuses to run as root, so root starts it as somebody with no rights. */
 function person(): Person {
@@ -71,11 +71,22 @@ function person(): Person {
   throw new Plain("PostgreSQL may not run as root, and there is no user postgres or nobody to run it as.");
 }
 
+const own = (path: string, who: Person): void => {
+  if (who.uid !== undefined && who.gid !== undefined) chownSync(path, who.uid, who.gid);
+};
+
 function password(home: string): string {
   const file = join(home, "password");
   if (!existsSync(file)) writeFileSync(file, randomBytes(24).toString("base64url"), { mode: 0o600 });
   return readFileSync(file, "utf8").trim();
 }
+
+/** The server sees none of our settings. */
+const bareEnv = (home: string): NodeJS.ProcessEnv => ({
+  NODE_ENV: "production",
+  PATH: process.env.PATH,
+  HOME: home,
+});
 
 const alive = (pid: number): boolean => {
   try {
@@ -124,7 +135,7 @@ async function initialize(
 ): Promise<void> {
   const file = join(home, "first-password");
   writeFileSync(file, secret, { mode: 0o600 });
-  if ("uid" in who) chownSync(file, who.uid, who.gid);
+  own(file, who);
   const args = [
     "-D",
     data,
@@ -140,7 +151,7 @@ async function initialize(
   const child = spawn(join(bin, "initdb"), args, {
     ...who,
     cwd: home,
-    env: { PATH: process.env.PATH, HOME: home },
+    env: bareEnv(home),
     stdio: ["ignore", "ignore", "pipe"],
   });
   let words = "";
@@ -169,7 +180,15 @@ function serverSettings(port: number, throwaway: boolean): string[] {
   return Object.entries({ ...common, ...fast }).flatMap(([name, value]) => ["-c", `${name}=${value}`]);
 }
 
-async function launch(bin: string, home: string, data: string, who: Person, options: ClusterOptions) {
+type Launched = { child: ChildProcess; port: number; gone: Promise<void> } | { failed: string };
+
+async function launch(
+  bin: string,
+  home: string,
+  data: string,
+  who: Person,
+  options: ClusterOptions,
+): Promise<Launched> {
   const port = await takePort(options.port);
   // Its own process group: Ctrl-C is for us alone, the database ends last.
   const child = spawn(
@@ -179,7 +198,7 @@ async function launch(bin: string, home: string, data: string, who: Person, opti
       ...who,
       cwd: home,
       detached: true,
-      env: { PATH: process.env.PATH, HOME: home },
+      env: bareEnv(home),
       stdio: ["ignore", "pipe", "pipe"],
     },
   );
@@ -233,7 +252,7 @@ export async function startPostgres(options: ClusterOptions): Promise<Cluster> {
   const bin = await binaries(data, say);
   const who = person();
   mkdirSync(home, { recursive: true, mode: 0o755 });
-  if ("uid" in who) chownSync(home, who.uid, who.gid);
+  own(home, who);
   const secret = password(home);
   await endLeftover(data);
   if (!existsSync(join(data, "PG_VERSION"))) await initialize(bin, home, data, who, secret);
@@ -242,8 +261,8 @@ export async function startPostgres(options: ClusterOptions): Promise<Cluster> {
   // After a kill -9 the server's children linger for a moment and hold the folder: try again.
   for (let round = 0; round < 20; round++) {
     const started = await launch(bin, home, data, who, options);
-    if (!("child" in started)) {
-      failed = started.failed ?? "";
+    if ("failed" in started) {
+      failed = started.failed;
       if (/No space left on device/i.test(failed))
         throw new Plain("The disk is full: PostgreSQL cannot start.");
       await pause(500);
