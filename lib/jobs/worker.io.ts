@@ -51,6 +51,7 @@ export async function runDueJobs(): Promise<void> {
 if (process.argv[1] === fileURLToPath(import.meta.url)) {
   const worker = await startWorker();
   log.info("worker ready");
+  process.send?.("ready");
   const end = () => void worker.stop().catch(() => undefined);
   process.once("SIGTERM", end);
   process.once("SIGINT", end);

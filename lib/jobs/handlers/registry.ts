@@ -7,4 +7,7 @@ export type Handler<N extends JobName> = (ctx: Ctx, payload: JobPayload<N>) => P
  * Which file does which job. Loaded when the first such job comes, so that one broken
  * handler stops its own jobs and no other. A job without a line here waits, and is retried.
  */
-export const HANDLERS: { [N in JobName]?: () => Promise<{ handle: Handler<N> }> } = {};
+export const HANDLERS: { [N in JobName]?: () => Promise<{ handle: Handler<N> }> } = {
+  "file.check": () => import("./checkFile"),
+  "ledger.apply_import": () => import("./applyImport"),
+};
