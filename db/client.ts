@@ -5,6 +5,7 @@ import pg from "pg";
 import type { Ctx, TxCtx } from "@/lib/ctx";
 import type { Result } from "@/lib/base/result";
 import { env } from "@/lib/env";
+import { log } from "@/lib/log";
 
 // Civil days stay text: a JavaScript Date would move them by the machine's zone.
 pg.types.setTypeParser(pg.types.builtins.DATE, (v) => v);
@@ -16,7 +17,11 @@ const kept = globalThis as unknown as { mendbayPool?: pg.Pool };
 
 /** The one pool of this process. */
 export function pool(): pg.Pool {
-  kept.mendbayPool ??= new pg.Pool({ connectionString: env().DATABASE_URL, max: env().PG_POOL_MAX });
+  if (!kept.mendbayPool) {
+    kept.mendbayPool = new pg.Pool({ connectionString: env().DATABASE_URL, max: env().PG_POOL_MAX });
+    // A resting connection that breaks is the pool's to replace; unheard, it would end the process.
+    kept.mendbayPool.on("error", (broken) => log.warn({ err: broken }, "a database connection broke"));
+  }
   return kept.mendbayPool;
 }
 

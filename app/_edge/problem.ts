@@ -55,6 +55,22 @@ export function problem(refusal: Refusal, at: { origin: string; requestId: strin
   return new Response(JSON.stringify(body), { status, headers });
 }
 
+/** For a throw: a bug of ours, told without its words. */
+export function crashed(at: { origin: string; requestId: string }): Response {
+  const body = {
+    type: "about:blank",
+    title: "Internal Server Error",
+    status: 500,
+    detail: "Something went wrong here. It has been written down.",
+    instance: `urn:uuid:${at.requestId}`,
+  };
+  const headers = { "content-type": "application/problem+json", "cache-control": "no-store" };
+  return new Response(JSON.stringify(body), {
+    status: 500,
+    headers: { ...headers, "x-request-id": at.requestId },
+  });
+}
+
 /** RFC 8288: the same list, its other settings kept, from the cursor on. */
 export function nextLink(url: URL, cursor: string | null | undefined): string | undefined {
   if (!cursor) return undefined;

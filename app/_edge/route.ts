@@ -6,7 +6,7 @@ import type { Ctx } from "@/lib/ctx";
 import { env } from "@/lib/env";
 import { log } from "@/lib/log";
 import { currentCtx } from "./ctx";
-import { nextLink, problem, versionIn } from "./problem";
+import { crashed, nextLink, problem, versionIn } from "./problem";
 
 const MAX_BODY = 1_048_576;
 
@@ -50,11 +50,7 @@ export function api<T, P = Record<string, string>>(
     } catch (thrown) {
       unstable_rethrow(thrown);
       log.error({ err: thrown, requestId: ctx.requestId, path: request.nextUrl.pathname }, "request failed");
-      const response = problem(
-        { code: "unavailable", message: "Something went wrong here. It has been written down." },
-        where,
-      );
-      return new Response(response.body, { status: 500, headers: response.headers });
+      return crashed(where);
     }
   };
 }

@@ -109,8 +109,9 @@ function postmaster(data: string): { pid: number; ready: boolean } | undefined {
   }
 }
 
-/** A server left behind by a start that was killed still holds this folder: end it in order. */
-async function endLeftover(data: string): Promise<void> {
+/** A server left behind by a start that was killed still holds its folder: end it in order. */
+export async function endLeftover(home: string): Promise<void> {
+  const data = join(home, "cluster");
   const left = postmaster(data);
   if (!left || !alive(left.pid)) return;
   let command = "";
@@ -254,7 +255,7 @@ export async function startPostgres(options: ClusterOptions): Promise<Cluster> {
   mkdirSync(home, { recursive: true, mode: 0o755 });
   own(home, who);
   const secret = password(home);
-  await endLeftover(data);
+  await endLeftover(home);
   if (!existsSync(join(data, "PG_VERSION"))) await initialize(bin, home, data, who, secret);
 
   let failed = "";
