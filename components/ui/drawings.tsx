@@ -1,0 +1,175 @@
+import type { ReactNode } from "react";
+
+// Silkscreen drawings: ink lines, square ends, no fills. Each stands beside a word, so all are hidden
+// from readers.
+
+const HAZARDS = {
+  mains: (
+    <>
+      <path d="M15 4v9M29 4v9M10 13h24v6c0 8-5 12-12 12s-12-4-12-12zM22 31v9" />
+      <path d="M5 5 39 39" strokeWidth="2.5" />
+    </>
+  ),
+  esd: (
+    <>
+      <ellipse cx="17" cy="13" rx="13" ry="7" />
+      <path d="M4 13v6c0 4 6 7 13 7s13-3 13-7v-6" />
+      <path d="M14 19h6v5h-6z" />
+      <path d="M20 22c6 0 3 6 8 5s2 5 6 5v3M27 35h14M30 38.5h8M32.5 42h3" />
+    </>
+  ),
+  heat: (
+    <>
+      <path d="M6 38h32M10 38V24M17 38V24M24 38V24M31 38V24M35 38V24" />
+      <path d="M12 18c-3-4 3-6 0-11M22 18c-3-4 3-6 0-11M32 18c-3-4 3-6 0-11" />
+    </>
+  ),
+  battery: (
+    <>
+      <path d="M22 4 41 38H3Z" />
+      <path d="M15 21h12v13H15zM18.5 21v-3h5v3" />
+      <path d="m22.5 23-3 5h5l-3 5" strokeWidth="1.5" />
+    </>
+  ),
+  lift: (
+    <>
+      <rect x="11" y="16" width="22" height="9" />
+      <circle cx="5" cy="10" r="3.4" />
+      <circle cx="39" cy="10" r="3.4" />
+      <path d="M5 14v13l-3 13M5 27l4 13M5 18l6 5M39 14v13l3 13M39 27l-4 13M39 18l-6 5" />
+    </>
+  ),
+  data: (
+    <>
+      <rect x="9" y="5" width="26" height="34" />
+      <circle cx="22" cy="18" r="8.5" />
+      <circle cx="22" cy="18" r="1.8" />
+      <path d="m24 20 6 11" />
+      <path d="M13 35h8" />
+    </>
+  ),
+  sharp: (
+    <>
+      <path d="M6 10h32v6l-5 5 5 5v12H6z" />
+      <path d="M24 40c-2-6-8-6-8-11 0-3 4-3 5 0V17c0-3 4-3 4 0v8c4 0 8 2 8 6 0 5-2 6-2 9" />
+    </>
+  ),
+  socket: (
+    <>
+      <path d="M5 13h34v26H5z" />
+      <path d="M12 20h20v12H12z" strokeDasharray="2 2.5" />
+      <path d="M9 4h26v5H9zM32 9v4" />
+      <path d="M5 13h7l-7 7z" />
+    </>
+  ),
+} satisfies Record<string, ReactNode>;
+
+export type HazardDrawing = keyof typeof HAZARDS;
+export const HAZARD_DRAWINGS = Object.keys(HAZARDS) as HazardDrawing[];
+
+/** A caution's drawing, 44 by 44. */
+export function Hazard({ drawing }: { drawing: HazardDrawing }) {
+  return (
+    <svg viewBox="0 0 44 44" aria-hidden="true">
+      {HAZARDS[drawing]}
+    </svg>
+  );
+}
+
+/** Bars of a code: stands in every scan field. */
+export function ScanBars({ big }: { big?: boolean }) {
+  return big ? (
+    <svg viewBox="0 0 58 44" aria-hidden="true">
+      <path d="M0 2h4v40H0zM7 2h2v40H7zM12 2h6v40h-6zM21 2h2v40h-2zM26 2h2v40h-2zM31 2h5v40h-5zM39 2h2v40h-2zM44 2h6v40h-6zM53 2h2v40h-2zM57 2h1v40h-1z" />
+    </svg>
+  ) : (
+    <svg className="i" viewBox="0 0 20 16" aria-hidden="true">
+      <path d="M1 2v12M4 2v12M5.5 2v12M9 2v12M12 2v12M13.5 2v12M16 2v12M19 2v12" strokeWidth="1.25" />
+    </svg>
+  );
+}
+
+export function Camera() {
+  return (
+    <svg className="i" viewBox="0 0 40 32" aria-hidden="true">
+      <path d="M2 8h9l3-5h12l3 5h9v21H2z" />
+      <circle cx="20" cy="18" r="6.5" />
+    </svg>
+  );
+}
+
+/** The drawn tick of the right-scan plate. */
+export function BigTick() {
+  return (
+    <svg viewBox="0 0 76 76" aria-hidden="true">
+      <path d="M10 40 30 60 67 17" />
+    </svg>
+  );
+}
+
+/** Pass: a tick. Fail: a cross. Always beside the word. */
+export function VerdictMark({ pass }: { pass: boolean }) {
+  return (
+    <svg viewBox="0 0 16 16" aria-hidden="true">
+      <path d={pass ? "M2 9l4 4 8-10" : "M3 3l10 10M13 3 3 13"} />
+    </svg>
+  );
+}
+
+const PACKING = {
+  cap: (
+    <>
+      <rect x="16" y="20" width="52" height="36" />
+      <path d="M22 26h40v24H22z" strokeDasharray="2 2" />
+      <path d="M20 8h44v7H20zM42 15v5" />
+      <path d="M16 20h7l-7 7z" fill="currentColor" />
+    </>
+  ),
+  bag: (
+    <>
+      <path d="M20 8h44v48H20z" />
+      <path d="M20 14h44M30 24h24v22H30z" />
+      <path d="M24 11h36" strokeDasharray="3 2" />
+    </>
+  ),
+  foam: (
+    <>
+      <rect x="6" y="6" width="72" height="52" />
+      <rect x="22" y="18" width="40" height="28" />
+      <path d="M6 32h16M62 32h16M42 6v12M42 46v12" />
+    </>
+  ),
+  data: (
+    <>
+      <path d="M20 10h44v44H20z" />
+      <circle cx="42" cy="30" r="14" />
+      <circle cx="42" cy="30" r="3" />
+      <path d="M28 58 56 4" strokeWidth="2.5" />
+    </>
+  ),
+  sheet: (
+    <>
+      <path d="M10 14h64v42H10z" />
+      <path d="M10 14h64M30 22h30v18H30z" />
+      <path d="M34 27h18M34 32h12M34 36h20" />
+    </>
+  ),
+  send: (
+    <>
+      <path d="M8 52h68M14 52V26h30v26M44 34h16l10 10v8" />
+      <circle cx="24" cy="54" r="5" />
+      <circle cx="60" cy="54" r="5" />
+    </>
+  ),
+} satisfies Record<string, ReactNode>;
+
+export type PackingDrawing = keyof typeof PACKING;
+
+/** A packing step's drawing, 84 by 64. */
+export function Packing({ drawing }: { drawing: PackingDrawing }) {
+  return (
+    <svg viewBox="0 0 84 64" aria-hidden="true">
+      {PACKING[drawing]}
+    </svg>
+  );
+}
