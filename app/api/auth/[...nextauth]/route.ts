@@ -1,0 +1,27 @@
+import NextAuth from "next-auth";
+import { NextResponse, type NextRequest } from "next/server";
+import { authOptions } from "@/lib/auth/queries";
+import { env } from "@/lib/env";
+
+type At = { params: Promise<{ nextauth: string[] }> };
+
+const handler = (request: NextRequest, at: At): Promise<Response> =>
+  NextAuth(request, at, authOptions()) as Promise<Response>;
+
+/**
+ * The link's GET consumes nothing: mail scanners follow links. It leads to a page whose button
+ * posts. Signing in by next-auth's own form is closed: codes are issued through our outbox.
+ */
+export async function GET(request: NextRequest, at: At): Promise<Response> {
+  const path = (await at.params).nextauth.join("/");
+  if (path === "callback/email") {
+    return NextResponse.redirect(`${env().MENDBAY_URL}/sign-in/confirm${request.nextUrl.search}`, 303);
+  }
+  return handler(request, at);
+}
+
+export async function POST(request: NextRequest, at: At): Promise<Response> {
+  const path = (await at.params).nextauth.join("/");
+  if (path.startsWith("signin")) return new NextResponse(null, { status: 404 });
+  return handler(request, at);
+}
