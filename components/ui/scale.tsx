@@ -14,6 +14,45 @@ export function dayNumber(day: string): number {
 
 const dayText = (n: number) => new Date(n * MS).toISOString().slice(0, 10);
 
+const MONTHS = [
+  "January",
+  "February",
+  "March",
+  "April",
+  "May",
+  "June",
+  "July",
+  "August",
+  "September",
+  "October",
+  "November",
+  "December",
+];
+
+const split = (day: string) => {
+  const [y = "", m = "1", d = "1"] = day.split("-");
+  return { year: y, month: MONTHS[Number(m) - 1] ?? "", date: Number(d) };
+};
+
+/** "4 Mar 2024", or "4 Mar" beside a day of the same year. */
+export function shortDay(day: string, beside?: string): string {
+  const { year, month, date } = split(day);
+  const short = `${date} ${month.slice(0, 3)}`;
+  return beside?.startsWith(`${year}-`) ? short : `${short} ${year}`;
+}
+
+/** "4 March 2024". */
+export function longDay(day: string): string {
+  const { year, month, date } = split(day);
+  return `${date} ${month} ${year}`;
+}
+
+/** "March 2024". */
+export function monthOf(day: string): string {
+  const { year, month } = split(day);
+  return `${month} ${year}`;
+}
+
 export type Span = { from: string; to: string };
 
 /** Where a day stands between two days, in percent, kept within 0 and 100. */

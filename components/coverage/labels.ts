@@ -1,0 +1,50 @@
+/**
+ * Where the labels of a ruler's lines stand. Claim and today are often a day apart, so each label is
+ * put on a side of its line and, where that is not enough, on a lane of its own.
+ */
+export type LineLabel = { id: string; at: number; text: string; prefer: "left" | "right" };
+export type Placed = { side: "left" | "right"; lane: number };
+
+const PER_CHARACTER = 6.6;
+const PADDING = 10;
+const LANES = 4;
+
+type Box = { from: number; to: number; lane: number };
+
+/** Labels by id for a scale of this many pixels. Earlier labels choose first. */
+export function placeLabels(labels: readonly LineLabel[], width: number): Map<string, Placed> {
+  const lines = labels.map((l) => (l.at / 100) * width);
+  const taken: Box[] = [];
+  const placed = new Map<string, Placed>();
+
+  labels.forEach((label, index) => {
+    const x = lines[index] ?? 0;
+    const w = label.text.length * PER_CHARACTER + PADDING;
+    const boxOn = (side: "left" | "right", lane: number): Box =>
+      side === "right" ? { from: x, to: x + w, lane } : { from: x - w, to: x, lane };
+    const fits = (b: Box) => b.from >= 0 && b.to <= width;
+    const free = (b: Box) => taken.every((t) => t.lane !== b.lane || b.to <= t.from || b.from >= t.to);
+    const clear = (b: Box) => lines.every((line, i) => i === index || line <= b.from || line >= b.to);
+    const sides = label.prefer === "left" ? (["left", "right"] as const) : (["right", "left"] as const);
+
+    const options: { side: "left" | "right"; box: Box }[] = [];
+    for (let lane = 0; lane < LANES; lane++) {
+      for (const side of sides) options.push({ side, box: boxOn(side, lane) });
+    }
+    const usable = options.filter((o) => fits(o.box) && free(o.box));
+    const best =
+      // A label that covers no other line, on the first lane, is worth more than its wished-for side.
+      usable.find((o) => o.box.lane === 0 && clear(o.box)) ??
+        usable.find((o) => clear(o.box)) ??
+        usable[0] ?? {
+          side: x > width / 2 ? ("left" as const) : ("right" as const),
+          box: boxOn("right", LANES - 1),
+        };
+    taken.push(best.box);
+    placed.set(label.id, { side: best.side, lane: best.box.lane });
+  });
+  return placed;
+}
+
+export const lanesOf = (placed: Map<string, Placed>): number =>
+  Math.max(0, ...[...placed.values()].map((p) => p.lane)) + 1;
