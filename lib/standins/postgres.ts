@@ -42,6 +42,8 @@ function versions(): number[] {
     .sort((a, b) => b - a);
 }
 
+export const hasPostgres = (): boolean => versions().length > 0;
+
 /** The folder of the server programs: those that made the cluster, else the newest. */
 async function binaries(data: string, say: (line: string) => void): Promise<string> {
   if (versions().length === 0) await installPackages(["postgresql"], say);
@@ -327,7 +329,17 @@ async function asAdmin<T>(cluster: Cluster, run: (admin: pg.Client) => Promise<T
   }
 }
 
-/** Removes a throwaway home, also when it belongs to another user. */
+/** Removes throwaway homes `<prefix><process id>` whose process is gone: what a killed run left. */
+export async function sweepHomes(folder: string, prefix: string): Promise<void> {
+  for (const name of readdirSync(folder).filter((n) => n.startsWith(prefix))) {
+    const owner = Number(name.slice(prefix.length));
+    if (!Number.isInteger(owner) || owner <= 0 || alive(owner)) continue;
+    await endLeftover(join(folder, name));
+    removeHome(join(folder, name));
+  }
+}
+
+/** Removes a throwaway home with all its data. */
 export function removeHome(home: string): void {
   if (dirname(home) === "/" || home.length < 8) throw new Error(`will not remove ${home}`);
   rmSync(home, { recursive: true, force: true });

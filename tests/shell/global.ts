@@ -1,9 +1,8 @@
-import { readdirSync } from "node:fs";
 import { tmpdir } from "node:os";
 import { join } from "node:path";
 import type { TestProject } from "vitest/node";
 import { migrateDatabase } from "@/db/migrate";
-import { ensureDatabase, removeHome, startPostgres } from "@/lib/standins/postgres";
+import { ensureDatabase, removeHome, startPostgres, sweepHomes } from "@/lib/standins/postgres";
 
 declare module "vitest" {
   interface ProvidedContext {
@@ -14,24 +13,9 @@ declare module "vitest" {
 
 const PREFIX = "mendbay-test-";
 
-/** What a run that was killed left behind is removed by the next one. */
-async function sweep(): Promise<void> {
-  for (const name of readdirSync(tmpdir()).filter((n) => n.startsWith(PREFIX))) {
-    const owner = Number(name.slice(PREFIX.length));
-    try {
-      process.kill(owner, 0);
-    } catch {
-      const home = join(tmpdir(), name);
-      const left = await startPostgres({ home, throwaway: true }).catch(() => undefined);
-      await left?.stop();
-      removeHome(home);
-    }
-  }
-}
-
 /** One private cluster and one migrated template for the whole run. */
 export default async function setup(project: TestProject): Promise<() => Promise<void>> {
-  await sweep();
+  await sweepHomes(tmpdir(), PREFIX);
   const home = join(tmpdir(), `${PREFIX}${process.pid}`);
   removeHome(home);
   const cluster = await startPostgres({ home, throwaway: true });
