@@ -35,6 +35,15 @@ const Env = z.object({
 });
 
 export type Env = z.output<typeof Env>;
+
+const LOOPBACK = /^(127\.0\.0\.1|localhost|\[::1\])$/;
+
+/** The demo door lets anybody in as anybody: it opens only where all that is behind it is on this machine. */
+function demoIsAlone(found: Env): boolean {
+  if (found.MENDBAY_DEMO === "0") return true;
+  const all = [found.DATABASE_URL, found.SMTP_URL, found.MENDBAY_URL, found.UPLOADTHING_INGEST_URL ?? ""];
+  return all.every((url) => URL.canParse(url) && LOOPBACK.test(new URL(url).hostname));
+}
 let cached: Env | undefined;
 
 /** Reads and checks the settings once. @throws Error that names every wrong setting. */
@@ -45,6 +54,8 @@ export function env(): Env {
     const lines = parsed.error.issues.map((i) => `  ${i.path.join(".")}: ${i.message}`);
     throw new Error(`These settings are missing or wrong:\n${lines.join("\n")}`);
   }
+  if (!demoIsAlone(parsed.data))
+    throw new Error("MENDBAY_DEMO=1 beside a service that is not on this machine: the demo door stays shut.");
   cached = parsed.data;
   return cached;
 }
