@@ -58,6 +58,7 @@ export async function chooseTheme(form: FormData): Promise<void> {
   const theme = form.get("theme");
   if (theme !== "light" && theme !== "dark" && theme !== "system") return;
   await keepTheme(await currentCtx(), theme);
+  (await cookies()).set("theme", theme, { maxAge: 365 * 86_400, sameSite: "lax", path: "/" });
   const back = form.get("back");
   redirect(typeof back === "string" ? safeNext(back) : "/");
 }

@@ -49,7 +49,8 @@ export const OpenTicket = z.object({
   accountId: z.uuid().nullish(),
   contactId: z.uuid().nullish(),
   personName: z.string().trim().max(200).default(""),
-  personEmail: z.email(),
+  // With letters beyond ASCII too (RFC 6531).
+  personEmail: z.email({ pattern: z.regexes.unicodeEmail }),
   channel: z.enum(CHANNELS),
   subject: z.string().trim().max(500).default(""),
   faultWords: z.string().trim().max(4000).default(""),

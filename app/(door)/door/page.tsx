@@ -5,7 +5,7 @@ import { demoPeople } from "@/lib/auth/queries";
 import { env } from "@/lib/env";
 import { Hang } from "../hang";
 
-export const metadata: Metadata = { title: "Demo door · Mendbay" };
+export const metadata: Metadata = { title: "Demo door" };
 
 const ROLE_WORDS: Record<string, string> = {
   agent: "agent: the desk",

@@ -4,7 +4,7 @@ import { env } from "@/lib/env";
 import { Hang } from "../hang";
 import { AskForm } from "./form";
 
-export const metadata: Metadata = { title: "Sign in · Mendbay" };
+export const metadata: Metadata = { title: "Sign in" };
 
 const ERRORS: Record<string, string> = {
   Verification: "This link or code was used already, or is older than ten minutes. Ask for a new one.",

@@ -3,7 +3,7 @@ import { Button } from "@/components/ui/button";
 import { safeNext } from "@/lib/auth/schema";
 import { Hang } from "../../hang";
 
-export const metadata: Metadata = { title: "One more press · Mendbay" };
+export const metadata: Metadata = { title: "One more press" };
 
 /** Consumes nothing: only the button's POST does. */
 export default async function Confirm({

@@ -4,7 +4,7 @@ import { Field } from "@/components/ui/field";
 import { CODE_MINUTES, safeNext } from "@/lib/auth/schema";
 import { Hang } from "../../hang";
 
-export const metadata: Metadata = { title: "Look at your mail · Mendbay" };
+export const metadata: Metadata = { title: "Look at your mail" };
 
 const ERRORS: Record<string, string> = {
   code: "The code has ten characters, such as 7K2M9-Q4X1B.",
