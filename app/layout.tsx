@@ -1,6 +1,6 @@
 import type { Metadata, Viewport } from "next";
-import { cookies } from "next/headers";
 import type { ReactNode } from "react";
+import { person } from "./_look/person";
 import { faces } from "./fonts";
 import "./globals.css";
 
@@ -23,15 +23,10 @@ export const viewport: Viewport = {
   ],
 };
 
-/** Light, dark, or as the system says: what the person chose, kept in a cookie so that the first paint is right. */
-async function theme(): Promise<"light" | "dark" | undefined> {
-  const kept = (await cookies()).get("theme")?.value;
-  return kept === "light" || kept === "dark" ? kept : undefined;
-}
-
 export default async function Root({ children }: { children: ReactNode }) {
+  const { theme } = await person();
   return (
-    <html lang="en-US" className={faces} data-theme={await theme()}>
+    <html lang="en-US" className={faces} data-theme={theme === "system" ? undefined : theme}>
       <body>
         <a className="skip" href="#main">
           Skip to the content
