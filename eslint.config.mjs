@@ -87,7 +87,13 @@ const config = [
   { files: ["lib/*/commands.ts", "lib/*/*.commands.ts"], rules: { "mendbay/command-shape": "error" } },
   {
     files: ["lib/base/*.ts", "lib/*/*.ts"],
-    ignores: ["lib/**/*.io.ts", "lib/*/commands.ts", "lib/*/queries.ts", "lib/standins/**", "lib/jobs/**"],
+    ignores: [
+      "lib/**/*.io.ts",
+      "lib/*/{,*.}commands.ts",
+      "lib/*/{,*.}queries.ts",
+      "lib/standins/**",
+      "lib/jobs/**",
+    ],
     rules: { "mendbay/pure": "error" },
   },
   { files: ["lib/standins/**", "db/**", "tests/**"], rules: { "no-console": "off" } },

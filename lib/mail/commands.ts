@@ -222,16 +222,14 @@ export async function holdMail(
   if (!may.ok) return may;
   return transact(ctx, async (ctx) => {
     const id = ctx.newId();
-    await ctx.tx
-      .insert(heldMails)
-      .values({
-        id,
-        messageId: input.messageRowId,
-        reason: input.reason,
-        hintTicketId: input.hintTicketId,
-        state: "held",
-        heldAt: ctx.now,
-      });
+    await ctx.tx.insert(heldMails).values({
+      id,
+      messageId: input.messageRowId,
+      reason: input.reason,
+      hintTicketId: input.hintTicketId,
+      state: "held",
+      heldAt: ctx.now,
+    });
     await audit(ctx, {
       act: "mail.hold",
       subject: ["message", input.messageRowId],
@@ -422,6 +420,24 @@ export async function retryMail(ctx: Ctx, outboxId: string): Promise<Result<unde
     if (done.length === 0) return refuse("rule", "This mail is not among those that failed.");
     await audit(ctx, { act: "mail.retry", subject: ["outbox", outboxId] });
     await enqueue(ctx, "mail.send", { outboxId }, { key: `mail:${outboxId}` });
+    return ok();
+  });
+}
+
+/** A mail that left came back for good: its row is dead and shown, and a person may try again. */
+export async function markBounced(
+  ctx: Ctx,
+  input: { messageRowId: string; recipient: string; status: string },
+): Promise<Result<undefined>> {
+  const may = permit(ctx, "mail.receive");
+  if (!may.ok) return may;
+  return transact(ctx, async (ctx) => {
+    const words = `It came back from ${input.recipient}${input.status ? ` (${input.status})` : ""}.`;
+    await ctx.tx
+      .update(outbox)
+      .set({ state: "dead", lastError: words })
+      .where(and(eq(outbox.messageRowId, input.messageRowId), eq(outbox.state, "sent")));
+    await audit(ctx, { act: "mail.bounced", subject: ["message", input.messageRowId], after: { words } });
     return ok();
   });
 }

@@ -124,3 +124,40 @@ export type MessageView = {
   outboxState: OutboxState | null;
   outboxError: string | null;
 };
+
+export type HeldView = {
+  heldId: string;
+  heldAt: Date;
+  reason: string;
+  hintTicketNumber: number | null;
+  kind: MailKind;
+  fromEmail: string;
+  fromName: string;
+  subject: string;
+  text: string;
+  sentAt: Date;
+  filing: { step: string; reason: string }[];
+};
+
+export type DeadLetter = {
+  outboxId: string;
+  toEmail: string;
+  template: TemplateName;
+  attempts: number;
+  error: string | null;
+  createdAt: Date;
+  subject: string;
+  ticketNumber: number | null;
+};
+
+export const AdmitHeld = z.object({
+  heldId: z.uuid(),
+  /** The ticket's number, as people say it; empty opens a new one. */
+  ticketNumber: z.coerce.number().int().positive().optional(),
+  /** From now on mail of this sender joins the record by itself. */
+  takesPart: z
+    .union([z.boolean(), z.literal("on")])
+    .transform((v) => v === true || v === "on")
+    .default(false),
+});
+export const DiscardHeld = z.object({ heldId: z.uuid() });

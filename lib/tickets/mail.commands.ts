@@ -12,8 +12,9 @@ import type { Ctx, TxCtx } from "@/lib/ctx";
 import { addEvidence } from "@/lib/evidence/commands";
 import { enqueue } from "@/lib/jobs/commands";
 import { contactByEmail, unitsBySerials } from "@/lib/ledger/queries";
-import { readArrival, type ReadMail } from "@/lib/mail/arrival.queries";
+import { readArrival } from "@/lib/mail/arrival.queries";
 import { enqueueMail, holdMail, markBounced, releaseHeld, storeInbound } from "@/lib/mail/commands";
+import type { ReadMail } from "@/lib/mail/parsed";
 import { messageOfRaw, rawMail } from "@/lib/mail/queries";
 import { AdmitHeld, DiscardHeld } from "@/lib/mail/schema";
 import { addTicketUnit, openTicket, recordEntry } from "./commands";
@@ -188,7 +189,8 @@ export async function keepMailFiles(
       .where(eq(tickets.id, input.ticketId))
       .for("update");
     if (!ticket) return refuse("not_found", "This ticket is not there.");
-    if (await filesKept(ctx, input.ticketId, input.messageRowId)) return ok({ again: true });
+    if (await filesKept(ctx, input.ticketId, input.messageRowId))
+      return ok<{ again: boolean }>({ again: true });
     const added = await addEvidence(ctx, {
       fileIds: input.fileIds,
       ticketId: input.ticketId,
@@ -208,7 +210,7 @@ export async function keepMailFiles(
     });
     if (!entry.ok) return entry;
     await audit(ctx, { act: "mail.files", subject: ["message", input.messageRowId], after: { evidence: n } });
-    return ok({ again: false });
+    return ok<{ again: boolean }>({ again: false });
   });
 }
 

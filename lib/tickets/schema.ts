@@ -118,3 +118,50 @@ export type EntryView = {
   line: string;
   data: Record<string, unknown>;
 };
+
+export type DeskRowView = {
+  id: string;
+  number: number;
+  serial: string | null;
+  isPart: boolean;
+  proposed: boolean;
+  fault: string;
+  customer: string;
+  clock: {
+    state: "running" | "over" | "rest";
+    share: number;
+    words: string;
+    late: boolean;
+    by: string | null;
+  };
+  waitingFor: string;
+  cover: { state: "covered" | "doa" | "part" | "ended" | "person" | "none"; words: string };
+  rmaNumber: string | null;
+  evidenceWanted: number;
+  evidenceCame: number;
+  lastLine: string;
+  lastAgo: string;
+  window: { firstOn: string; lastOn: string; clause: string; words: string } | null;
+};
+export type DeskGroupView = { on: WaitingOn; rows: DeskRowView[]; note: string };
+export type DeskView = {
+  sentence: string;
+  second: string;
+  groups: DeskGroupView[];
+  more: boolean;
+  today: string;
+  asOf: string;
+  zone: string;
+};
+
+/** What a list of tickets may be asked by. */
+export const DeskAsk = z.object({
+  q: z.string().max(120).optional().describe("words of the fault, customer, serial or RMA"),
+  on: z
+    .enum([...WAITING_ON, "all"])
+    .optional()
+    .describe("whom the tickets wait on"),
+});
+export const UnitCoverAsk = z.object({
+  on: z.iso.date().optional().describe("civil day; today in the seller's zone when left out"),
+});
