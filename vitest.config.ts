@@ -12,6 +12,8 @@ export default defineConfig({
   oxc: { jsx: { runtime: "automatic" } },
   test: {
     reporters: ["default"],
+    // Read when the logger is made, so before any test file could set it.
+    env: { MENDBAY_LOG: "silent" },
     projects: [
       {
         resolve: { alias },

@@ -19,8 +19,11 @@ const kept = globalThis as unknown as { mendbayPool?: pg.Pool };
 export function pool(): pg.Pool {
   if (!kept.mendbayPool) {
     kept.mendbayPool = new pg.Pool({ connectionString: env().DATABASE_URL, max: env().PG_POOL_MAX });
-    // A resting connection that breaks is the pool's to replace; unheard, it would end the process.
-    kept.mendbayPool.on("error", (broken) => log.warn({ err: broken }, "a database connection broke"));
+    // A connection that breaks is the pool's to replace, or its query's to report; unheard, it would
+    // end the process.
+    const broke = (broken: Error) => log.warn({ err: broken }, "a database connection broke");
+    kept.mendbayPool.on("error", broke);
+    kept.mendbayPool.on("connect", (client) => void client.on("error", broke));
   }
   return kept.mendbayPool;
 }

@@ -21,8 +21,19 @@ export async function migrateDatabase(url: string): Promise<void> {
   }
 }
 
+/** Causes outside of us, told in one line: no answer, unknown host, wrong password, no such database. */
+const OUTSIDE = new Set(["ECONNREFUSED", "ENOTFOUND", "ETIMEDOUT", "28P01", "28000", "3D000", "42501"]);
+
 if (process.argv[1] === fileURLToPath(import.meta.url)) {
   const url = process.env.DATABASE_URL;
   if (!url) throw new Error("DATABASE_URL says which database to migrate.");
-  await migrateDatabase(url);
+  try {
+    await migrateDatabase(url);
+  } catch (thrown) {
+    const { code, message } = thrown as { code?: string; message?: string };
+    if (!code || !OUTSIDE.has(code)) throw thrown;
+    const { host, pathname } = new URL(url);
+    console.error(`PostgreSQL at ${host}${pathname} cannot be used: ${message || code}`);
+    process.exitCode = 1;
+  }
 }
