@@ -90,7 +90,7 @@ export type Tick = { at: number; kind: "month" | "quarter" | "year"; label?: str
  * The ticks of a span: years always, quarters up to fifteen years, months up to seven. A year's label
  * is left out where it would run past the edge or into the one before it.
  */
-export function ticksOf(span: Span): Tick[] {
+export function ticksOf(span: Span, lastLabel = 95): Tick[] {
   const from = dayNumber(span.from);
   const to = dayNumber(span.to);
   const years = (to - from) / 365.25;
@@ -109,7 +109,7 @@ export function ticksOf(span: Span): Tick[] {
     if (n >= from && (m - 1) % every === 0) {
       const at = percentOf(day, span);
       const kind = m === 1 ? "year" : (m - 1) % 3 === 0 ? "quarter" : "month";
-      const labelled = kind === "year" && y % labelEvery === 0 && at < 95;
+      const labelled = kind === "year" && y % labelEvery === 0 && at < lastLabel;
       ticks.push(labelled ? { at, kind, label: String(y) } : { at, kind });
     }
     m += 1;
@@ -130,7 +130,7 @@ export function Scale({
 }) {
   return (
     <div className="scale" style={style} aria-hidden="true">
-      {ticksOf(span)
+      {ticksOf(span, months ? 95 : 90)
         .filter((t) => months || t.kind !== "month")
         .map((t) => (
           <span key={t.at}>
