@@ -1,8 +1,8 @@
-import { and, eq, sql } from "drizzle-orm";
+import { eq, sql } from "drizzle-orm";
 import type { z } from "zod";
 import { transact } from "@/db/client";
 import { rawMails } from "@/db/schema/mail";
-import { entries, ticketParticipants, tickets } from "@/db/schema/tickets";
+import { ticketParticipants, tickets } from "@/db/schema/tickets";
 import { audit } from "@/lib/audit/commands";
 import { permit } from "@/lib/auth/rules";
 import { parse } from "@/lib/base/parse";
@@ -15,7 +15,7 @@ import { contactByEmail, unitsBySerials } from "@/lib/ledger/queries";
 import { readArrival } from "@/lib/mail/arrival.queries";
 import { enqueueMail, holdMail, markBounced, releaseHeld, storeInbound } from "@/lib/mail/commands";
 import type { ReadMail } from "@/lib/mail/parsed";
-import { messageOfRaw, rawMail } from "@/lib/mail/queries";
+import { filesOfMail, messageOfRaw, rawMail } from "@/lib/mail/queries";
 import { AdmitHeld, DiscardHeld } from "@/lib/mail/schema";
 import { addTicketUnit, openTicket, recordEntry } from "./commands";
 
@@ -189,8 +189,7 @@ export async function keepMailFiles(
       .where(eq(tickets.id, input.ticketId))
       .for("update");
     if (!ticket) return refuse("not_found", "This ticket is not there.");
-    if (await filesKept(ctx, input.ticketId, input.messageRowId))
-      return ok<{ again: boolean }>({ again: true });
+    if ((await filesOfMail(ctx, input)).kept) return ok<{ again: boolean }>({ again: true });
     const added = await addEvidence(ctx, {
       fileIds: input.fileIds,
       ticketId: input.ticketId,
@@ -212,22 +211,6 @@ export async function keepMailFiles(
     await audit(ctx, { act: "mail.files", subject: ["message", input.messageRowId], after: { evidence: n } });
     return ok<{ again: boolean }>({ again: false });
   });
-}
-
-/** True when the files of this mail are in the record already. */
-export async function filesKept(ctx: TxCtx, ticketId: string, messageRowId: string): Promise<boolean> {
-  const rows = await ctx.tx
-    .select({ id: entries.id })
-    .from(entries)
-    .where(
-      and(
-        eq(entries.ticketId, ticketId),
-        eq(entries.kind, "evidence_added"),
-        sql`${entries.data} ->> 'messageId' = ${messageRowId}`,
-      ),
-    )
-    .limit(1);
-  return rows.length > 0;
 }
 
 /** A person lets a held mail in: to the ticket they name, or as a new one. Its files follow by the job. */

@@ -13,7 +13,10 @@ import { addTicketUnit, openTicket, recordEntry, takeDecision } from "./commands
  * A portal report becomes a ticket: its unit tied by the customer's own choice, evidence moved,
  * the coverage decision taken and shown. All or nothing; sent twice, the second finds the first.
  */
-export async function sendReport(ctx: Ctx, reportId: string): Promise<Result<{ number: number; decisionId: string }>> {
+export async function sendReport(
+  ctx: Ctx,
+  reportId: string,
+): Promise<Result<{ number: number; decisionId: string }>> {
   const may = permit(ctx, "report.write");
   if (!may.ok) return may;
   const { actor } = ctx;
@@ -34,31 +37,59 @@ export async function sendReport(ctx: Ctx, reportId: string): Promise<Result<{ n
     if (!unit) return refuse("not_found", "This unit is not among your equipment.");
     const faultClass = a.faultClass as FaultClass;
     const opened = await openTicket(ctx, {
-      accountId: actor.accountId, contactId: actor.contactId, personName: actor.name, personEmail: actor.email, channel: "portal",
-      subject: `${unit.serial}: ${FAULT_WORDS[faultClass]}`, faultWords: a.words!.trim(), receivedAt: ctx.now,
+      accountId: actor.accountId,
+      contactId: actor.contactId,
+      personName: actor.name,
+      personEmail: actor.email,
+      channel: "portal",
+      subject: `${unit.serial}: ${FAULT_WORDS[faultClass]}`,
+      faultWords: a.words!.trim(),
+      receivedAt: ctx.now,
     });
     if (!opened.ok) return opened;
     const { ticketId, number } = opened.value;
     const closed = await closeReport(ctx, reportId, ticketId);
     if (!closed.ok) return closed;
     const answers = { since: a.since ?? "", battery: a.battery!, data: a.data ?? "", tried: a.tried ?? "" };
-    const tied = await addTicketUnit(ctx, { ticketId, unitId, state: "tied", faultClass, faultWords: a.words!.trim(), answers });
+    const tied = await addTicketUnit(ctx, {
+      ticketId,
+      unitId,
+      state: "tied",
+      faultClass,
+      faultWords: a.words!.trim(),
+      answers,
+    });
     if (!tied.ok) return tied;
     const said = await recordEntry(ctx, {
-      ticketId, kind: "fault_reported", line: `${FAULT_WORDS[faultClass]}: ${a.words!.trim().slice(0, 200)}`,
+      ticketId,
+      kind: "fault_reported",
+      line: `${FAULT_WORDS[faultClass]}: ${a.words!.trim().slice(0, 200)}`,
       data: { unitId, serial: unit.serial, slot: unit.slot, faultClass, words: a.words, answers },
     });
     if (!said.ok) return said;
-    const moved = await moveReportEvidence(ctx, { reportId, ticketId, ticketUnitId: tied.value.ticketUnitId });
+    const moved = await moveReportEvidence(ctx, {
+      reportId,
+      ticketId,
+      ticketUnitId: tied.value.ticketUnitId,
+    });
     if (!moved.ok) return moved;
     const n = moved.value.evidenceIds.length;
     if (n > 0) {
-      const entry = await recordEntry(ctx, { ticketId, kind: "evidence_added", line: n === 1 ? "One piece of evidence" : `${n} pieces of evidence`, data: { evidenceIds: moved.value.evidenceIds, source: "portal" } });
+      const entry = await recordEntry(ctx, {
+        ticketId,
+        kind: "evidence_added",
+        line: n === 1 ? "One piece of evidence" : `${n} pieces of evidence`,
+        data: { evidenceIds: moved.value.evidenceIds, source: "portal" },
+      });
       if (!entry.ok) return entry;
     }
     const decided = await takeDecision(ctx, { ticketId, ticketUnitId: tied.value.ticketUnitId, faultClass });
     if (!decided.ok) return decided;
-    await audit(ctx, { act: "report.sent", subject: ["ticket", ticketId], after: { number, outcome: decided.value.decision.outcome } });
+    await audit(ctx, {
+      act: "report.sent",
+      subject: ["ticket", ticketId],
+      after: { number, outcome: decided.value.decision.outcome },
+    });
     return ok({ number, decisionId: decided.value.decisionId });
   });
 }

@@ -1,0 +1,279 @@
+"use client";
+import { useActionState, useState } from "react";
+import { UNSENT, type FormState } from "@/app/_edge/form";
+import { Button } from "@/components/ui/button";
+import { ErrorSummary } from "@/components/ui/error-summary";
+import { Check, Choice, ChoiceGroup, Field, Select, TextArea } from "@/components/ui/field";
+import { FAULT_CLASSES, FAULT_WORDS, REMEDY_WORDS, type Outcome, type Remedy } from "@/lib/coverage/schema";
+import { authorize, close, decide, decline, tie } from "./actions";
+
+type UnitAct = {
+  ticketUnitId: string;
+  serial: string;
+  what: string;
+  faultClass: string | null;
+  decision: { outcome: Outcome; remedies: Remedy[]; fees: string[]; headline: string } | null;
+  rmaNumber: string | null;
+};
+type Props = { ticketId: string; number: number; closed: boolean; units: UnitAct[] };
+
+const EXCLUDABLE = ["bent_contacts", "physical_damage", "liquid"];
+
+function Hidden({ ticketId, number }: { ticketId: string; number: number }) {
+  return (
+    <>
+      <input type="hidden" name="ticketId" value={ticketId} />
+      <input type="hidden" name="number" value={number} />
+    </>
+  );
+}
+
+function problems(state: FormState<unknown>) {
+  const list = Object.entries(state.fields ?? {}).flatMap(([field, messages]) =>
+    messages.map((message) => ({ field, message })),
+  );
+  return list.length > 0 ? list : state.message && !state.ok ? [{ message: state.message }] : [];
+}
+
+/** The next acts of a ticket, in the order they are done. What cannot be done yet says why. */
+export function Acts({ ticketId, number, closed, units }: Props) {
+  const first = units[0];
+  const decided = units.filter((u) => u.decision);
+  const covered = decided.filter(
+    (u) => u.decision!.outcome === "covered" || u.decision!.outcome === "covered_doa",
+  );
+  const [open, setOpen] = useState<"tie" | "decide" | "authorize" | "decline" | "close" | null>(null);
+  const toggle = (what: NonNullable<typeof open>) => setOpen((o) => (o === what ? null : what));
+  const onRma = units.filter((u) => u.rmaNumber);
+  const authorizable = decided.filter((u) => !u.rmaNumber && u.decision!.remedies.length > 0);
+  return (
+    <section className="actsbox" aria-label="What to do next">
+      <div className="acts">
+        <Button type="button" kind="line" onClick={() => toggle("tie")} aria-expanded={open === "tie"}>
+          {first ? "Tie another unit" : "Tie a unit"}
+        </Button>
+        <Button
+          type="button"
+          kind="line"
+          onClick={() => toggle("decide")}
+          aria-expanded={open === "decide"}
+          reason={first ? undefined : "Decide: tie a unit first"}
+        >
+          {decided.length > 0 ? "Decide again" : "Take the decision"}
+        </Button>
+        <Button
+          type="button"
+          kind="line"
+          onClick={() => toggle("authorize")}
+          aria-expanded={open === "authorize"}
+          reason={
+            authorizable.length > 0
+              ? undefined
+              : onRma.length > 0
+                ? `On ${onRma[0]!.rmaNumber} already`
+                : decided.length > 0
+                  ? "RMA: no clause gives a remedy"
+                  : "RMA: decide first"
+          }
+        >
+          Authorize an RMA
+        </Button>
+        {decided.length > 0 && covered.length === 0 ? (
+          <Button
+            type="button"
+            kind="line"
+            onClick={() => toggle("decline")}
+            aria-expanded={open === "decline"}
+          >
+            Decline
+          </Button>
+        ) : null}
+        {closed ? null : (
+          <Button type="button" kind="quiet" onClick={() => toggle("close")} aria-expanded={open === "close"}>
+            Close the ticket
+          </Button>
+        )}
+      </div>
+      {open === "tie" ? <TieForm ticketId={ticketId} number={number} /> : null}
+      {open === "decide" ? <DecideForm ticketId={ticketId} number={number} units={units} /> : null}
+      {open === "authorize" ? (
+        <AuthorizeForm ticketId={ticketId} number={number} units={authorizable} />
+      ) : null}
+      {open === "decline" ? <DeclineForm ticketId={ticketId} number={number} units={decided} /> : null}
+      {open === "close" ? <CloseForm ticketId={ticketId} number={number} /> : null}
+    </section>
+  );
+}
+
+function TieForm({ ticketId, number }: { ticketId: string; number: number }) {
+  const [state, send, busy] = useActionState(tie, UNSENT as FormState<never>);
+  return (
+    <form action={send} method="post" className="actform">
+      <ErrorSummary title="Not tied" items={problems(state)} />
+      <Hidden ticketId={ticketId} number={number} />
+      <Field
+        label="Serial of the unit or part"
+        name="serial"
+        mono
+        hint="Scan it, or type it as printed."
+        error={state.fields?.serial?.[0]}
+        defaultValue={String(state.values?.serial ?? "")}
+        key={String(state.values?.serial ?? "")}
+        autoComplete="off"
+        autoFocus
+      />
+      <Button aria-disabled={busy}>Tie this unit</Button>
+    </form>
+  );
+}
+
+function DecideForm({ ticketId, number, units }: { ticketId: string; number: number; units: UnitAct[] }) {
+  const [state, send, busy] = useActionState(decide, UNSENT as FormState<never>);
+  const [fault, setFault] = useState(units[0]?.faultClass ?? "");
+  return (
+    <form action={send} method="post" className="actform">
+      <ErrorSummary title="No decision was taken" items={problems(state)} />
+      <Hidden ticketId={ticketId} number={number} />
+      {units.length > 1 ? (
+        <Select
+          label="For which unit"
+          name="ticketUnitId"
+          options={units.map((u) => ({ value: u.ticketUnitId, label: `${u.serial}, ${u.what}` }))}
+        />
+      ) : (
+        <input type="hidden" name="ticketUnitId" value={units[0]?.ticketUnitId ?? ""} />
+      )}
+      <Select
+        label="Kind of fault"
+        name="faultClass"
+        error={state.fields?.faultClass?.[0]}
+        value={fault}
+        onChange={(e) => setFault(e.target.value)}
+        options={[
+          { value: "", label: "Choose" },
+          ...FAULT_CLASSES.map((c) => ({ value: c, label: FAULT_WORDS[c] })),
+        ]}
+      />
+      {EXCLUDABLE.includes(fault) ? (
+        <Check
+          name="established"
+          value={fault}
+          title="The evidence shows it, and I have compared it with our own photos."
+          detail="Without this the decision is: needs a person."
+        />
+      ) : null}
+      <Button aria-disabled={busy}>{busy ? "Deciding" : "Decide and keep it"}</Button>
+      <p className="hint">
+        The rules decide by the clause, the dates and the evidence. It is kept as it was made.
+      </p>
+    </form>
+  );
+}
+
+function AuthorizeForm({ ticketId, number, units }: { ticketId: string; number: number; units: UnitAct[] }) {
+  const [state, send, busy] = useActionState(authorize, UNSENT as FormState<never>);
+  const [lines, setLines] = useState(units.map((u) => u.ticketUnitId));
+  const chosen = units.filter((u) => lines.includes(u.ticketUnitId));
+  const remedies = (chosen[0]?.decision?.remedies ?? []).filter((r) =>
+    chosen.every((u) => u.decision!.remedies.includes(r)),
+  );
+  const other = state.details?.ticketNumber;
+  return (
+    <form action={send} method="post" className="actform">
+      <ErrorSummary title="This RMA was not authorized" items={problems(state)} />
+      {other ? (
+        <p>
+          <a href={`/desk/${String(other)}`}>
+            Open ticket {String(other)}
+            {state.details?.rmaNumber ? `, ${String(state.details.rmaNumber)}` : ""}
+          </a>
+        </p>
+      ) : null}
+      <Hidden ticketId={ticketId} number={number} />
+      <fieldset className="field">
+        <legend>Comes back</legend>
+        {units.map((u) => (
+          <Check
+            key={u.ticketUnitId}
+            name="lines"
+            value={u.ticketUnitId}
+            title={
+              <>
+                <span className="m">{u.serial}</span>, {u.what}
+              </>
+            }
+            detail={u.decision?.headline}
+            checked={lines.includes(u.ticketUnitId)}
+            onChange={(e) =>
+              setLines((l) =>
+                e.target.checked ? [...l, u.ticketUnitId] : l.filter((x) => x !== u.ticketUnitId),
+              )
+            }
+          />
+        ))}
+      </fieldset>
+      <ChoiceGroup
+        legend="Remedy"
+        name="remedy"
+        hint="In the order of the clause."
+        error={state.fields?.remedy?.[0]}
+      >
+        {remedies.map((r, i) => (
+          <Choice key={r} name="remedy" value={r} title={REMEDY_WORDS[r]} defaultChecked={i === 0} />
+        ))}
+      </ChoiceGroup>
+      {[...new Set(chosen.flatMap((u) => u.decision?.fees ?? []))].map((f) => (
+        <p className="hint" key={f}>
+          Told to the customer before: {f}
+        </p>
+      ))}
+      <Button aria-disabled={busy} reason={chosen.length === 0 ? "Choose a line first" : undefined}>
+        {busy ? "Authorizing" : "Authorize and mail the traveler"}
+      </Button>
+    </form>
+  );
+}
+
+function DeclineForm({ ticketId, number, units }: { ticketId: string; number: number; units: UnitAct[] }) {
+  const [state, send, busy] = useActionState(decline, UNSENT as FormState<never>);
+  return (
+    <form action={send} method="post" className="actform">
+      <ErrorSummary title="Nothing was sent" items={problems(state)} />
+      <Hidden ticketId={ticketId} number={number} />
+      {units.length > 1 ? (
+        <Select
+          label="For which unit"
+          name="ticketUnitId"
+          options={units.map((u) => ({ value: u.ticketUnitId, label: u.serial }))}
+        />
+      ) : (
+        <input type="hidden" name="ticketUnitId" value={units[0]?.ticketUnitId ?? ""} />
+      )}
+      <TextArea
+        label="The finding, in words the customer can read"
+        name="reason"
+        hint="The letter adds the clause, the dates, what would change it and what we offer instead. Write “under our warranty”."
+        error={state.fields?.reason?.[0]}
+        defaultValue={String(state.values?.reason ?? "")}
+        key={String(state.values?.reason ?? "")}
+      />
+      <Button kind="stop" aria-disabled={busy}>
+        Decline and send the letter
+      </Button>
+    </form>
+  );
+}
+
+function CloseForm({ ticketId, number }: { ticketId: string; number: number }) {
+  const [state, send, busy] = useActionState(close, UNSENT as FormState<never>);
+  return (
+    <form action={send} method="post" className="actform">
+      <ErrorSummary title="It was not closed" items={problems(state)} />
+      <Hidden ticketId={ticketId} number={number} />
+      <Field label="Why nothing more is to do" name="reason" />
+      <Button kind="line" aria-disabled={busy}>
+        Close the ticket
+      </Button>
+    </form>
+  );
+}

@@ -1,0 +1,23 @@
+import { api } from "@/app/_edge/route";
+import { refuse } from "@/lib/base/result";
+import { addNote } from "@/lib/tickets/commands";
+import { ticketByNumber } from "@/lib/tickets/queries";
+
+/** Adds to the record. The version read before goes into If-Match, so that nobody writes past a colleague. */
+export const POST = api<{ ref: string }, { number: string }>(
+  async (ctx, { params, body, version }) => {
+    const ticket = await ticketByNumber(ctx, Number(params.number));
+    if (!ticket) return refuse("not_found", "Not found.");
+    if (version === undefined)
+      return refuse("version_missing", "Send If-Match with the ETag you read the ticket with.");
+    if (version !== ticket.version)
+      return refuse("stale", "The ticket has changed since you read it. Read it again.", {
+        details: { version: ticket.version },
+      });
+    const input = await body();
+    if (!input.ok) return input;
+    const text = (input.value as { text?: unknown } | null)?.text;
+    return addNote(ctx, { ticketId: ticket.id, text: typeof text === "string" ? text : "" });
+  },
+  { created: (v) => `#${v.ref}` },
+);
