@@ -90,7 +90,7 @@ const bareEnv = (home: string): NodeJS.ProcessEnv => ({
   HOME: home,
 });
 
-const alive = (pid: number): boolean => {
+export const isAlive = (pid: number): boolean => {
   try {
     process.kill(pid, 0);
     return true;
@@ -115,7 +115,7 @@ function postmaster(data: string): { pid: number; ready: boolean } | undefined {
 export async function endLeftover(home: string): Promise<void> {
   const data = join(home, "cluster");
   const left = postmaster(data);
-  if (!left || !alive(left.pid)) return;
+  if (!left || !isAlive(left.pid)) return;
   let command = "";
   try {
     command = readFileSync(`/proc/${left.pid}/cmdline`, "utf8");
@@ -124,8 +124,8 @@ export async function endLeftover(home: string): Promise<void> {
   }
   if (!command.includes(data)) return; // the number belongs to somebody else by now
   process.kill(left.pid, "SIGINT");
-  for (let i = 0; i < 300 && alive(left.pid); i++) await pause(100);
-  if (alive(left.pid))
+  for (let i = 0; i < 300 && isAlive(left.pid); i++) await pause(100);
+  if (isAlive(left.pid))
     throw new Plain(`A PostgreSQL from before (process ${left.pid}) does not end. Stop it first.`);
 }
 
@@ -333,7 +333,7 @@ async function asAdmin<T>(cluster: Cluster, run: (admin: pg.Client) => Promise<T
 export async function sweepHomes(folder: string, prefix: string): Promise<void> {
   for (const name of readdirSync(folder).filter((n) => n.startsWith(prefix))) {
     const owner = Number(name.slice(prefix.length));
-    if (!Number.isInteger(owner) || owner <= 0 || alive(owner)) continue;
+    if (!Number.isInteger(owner) || owner <= 0 || isAlive(owner)) continue;
     await endLeftover(join(folder, name));
     removeHome(join(folder, name));
   }

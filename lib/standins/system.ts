@@ -11,6 +11,7 @@ import {
   endLeftover,
   ensureDatabase,
   markDatabase,
+  isAlive,
   removeHome,
   startPostgres,
   type Cluster,
@@ -28,6 +29,8 @@ export type System = {
   receiver: { host: string; port: number };
   env: Record<string, string>;
   child(name: Part): Child;
+  /** For fault experiments: the server's process, which changes when it was killed. */
+  databasePid(): number | undefined;
   /** Resolves with words when something keeps ending by itself. */
   broken: Promise<string>;
   stop(): Promise<void>;
@@ -72,7 +75,13 @@ export async function startAll(options: StartOptions): Promise<System> {
   let tell: (words: string) => void = () => undefined;
   const broken = new Promise<string>((done) => (tell = done));
   let stopped: Promise<void> | undefined;
-  const stop = () => (stopped ??= stopAll([...children.values()], () => cluster, dataDir));
+  let reviving: Promise<void> | undefined;
+  const database = async () => {
+    // One that is just coming back is waited for: it would stay behind otherwise.
+    if (cluster && !isAlive(cluster.pid)) await reviving?.catch(() => undefined);
+    return cluster;
+  };
+  const stop = () => (stopped ??= stopAll([...children.values()], database, dataDir));
 
   // Never rejects unseen: it is awaited below, after the database is up.
   const build = options.dev ? undefined : settle(ensureBuilt(ROOT, log("build"), say));
@@ -81,13 +90,23 @@ export async function startAll(options: StartOptions): Promise<System> {
     let databaseUrl = options.real?.DATABASE_URL ?? "";
     if (!options.real) {
       say("Starting PostgreSQL …");
-      cluster = await startPostgres({
-        home: options.clusterHome ?? clusterHome(dataDir),
-        throwaway: options.throwaway,
-        say,
-      });
+      const home = options.clusterHome ?? clusterHome(dataDir);
+      const open = (port?: number) => startPostgres({ home, port, throwaway: options.throwaway, say });
+      cluster = await open();
       databaseUrl = cluster.url();
-      void cluster.gone.then(() => stopped ?? tell("PostgreSQL has ended."));
+      // A database that was killed comes back at the same address; the others find it again.
+      const keep = (current: Cluster): void => {
+        reviving = current.gone.then(async () => {
+          if (stopped) return;
+          cluster = await open(current.port);
+          if (cluster.port !== current.port) throw new Error("another program took its port");
+          keep(cluster);
+        });
+        reviving.catch((thrown: unknown) =>
+          tell(`PostgreSQL has ended and does not come back: ${String(thrown)}`),
+        );
+      };
+      keep(cluster);
     }
     const env = environment(options, settings, ports, databaseUrl);
     const start = (name: Part, args: string[], probe: Probe): Child => {
@@ -152,6 +171,7 @@ export async function startAll(options: StartOptions): Promise<System> {
         if (!found) throw new Error(`${name} does not run here`);
         return found;
       },
+      databasePid: () => cluster?.pid,
       broken,
       stop,
     };
@@ -234,13 +254,13 @@ async function prepareDatabase(cluster: Cluster, options: StartOptions): Promise
 /** Who takes work first, the hosts they use next, the database last. */
 async function stopAll(
   children: Child[],
-  cluster: () => Cluster | undefined,
+  cluster: () => Promise<Cluster | undefined>,
   dataDir: string,
 ): Promise<void> {
   const first = children.filter((c) => ["web", "worker", "receiver"].includes(c.name));
   await Promise.all(first.map((child) => child.stop()));
   await Promise.all(children.filter((c) => !first.includes(c)).map((child) => child.stop()));
-  await cluster()?.stop();
+  await (await cluster())?.stop();
   rmSync(join(dataDir, "running.pid"), { force: true });
 }
 
