@@ -1,7 +1,7 @@
 import { and, asc, count, desc, eq, gt, inArray, or, sql } from "drizzle-orm";
 import { read } from "@/db/client";
 import { heldMails, messages, outbox, rawMails } from "@/db/schema/mail";
-import { ticketParticipants, tickets } from "@/db/schema/tickets";
+import { entries, ticketParticipants, tickets } from "@/db/schema/tickets";
 import type { Ctx } from "@/lib/ctx";
 import type { FilingTicket } from "./filing";
 import type { DeadLetter, HeldView } from "./schema";
@@ -185,6 +185,31 @@ export async function alreadyStored(ctx: Ctx, messageId: string, contentHash: st
       .limit(1),
   );
   return rows.length > 0;
+}
+
+/** Whether the files of a mail are in the record already, and whose the ticket is. */
+export async function filesOfMail(
+  ctx: Ctx,
+  at: { ticketId: string; messageRowId: string },
+): Promise<{ kept: boolean; accountId: string | null }> {
+  return read(ctx, async (tx) => {
+    const [ticket] = await tx
+      .select({ accountId: tickets.accountId })
+      .from(tickets)
+      .where(eq(tickets.id, at.ticketId));
+    const found = await tx
+      .select({ id: entries.id })
+      .from(entries)
+      .where(
+        and(
+          eq(entries.ticketId, at.ticketId),
+          eq(entries.kind, "evidence_added"),
+          sql`${entries.data} ->> 'messageId' = ${at.messageRowId}`,
+        ),
+      )
+      .limit(1);
+    return { kept: found.length > 0, accountId: ticket?.accountId ?? null };
+  });
 }
 
 /** What we wrote on a ticket before, newest first: it is known again in a reply. */

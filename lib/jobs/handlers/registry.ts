@@ -8,6 +8,8 @@ export type Handler<N extends JobName> = (ctx: Ctx, payload: JobPayload<N>) => P
  * handler stops its own jobs and no other. A job without a line here waits, and is retried.
  */
 export const HANDLERS: { [N in JobName]?: () => Promise<{ handle: Handler<N> }> } = {
+  "mail.parse": () => import("./parseMail"),
+  "mail.send": () => import("./sendMail"),
   "file.check": () => import("./checkFile"),
   "ledger.apply_import": () => import("./applyImport"),
 };
