@@ -12,16 +12,14 @@ import { near, reference } from "./reference";
 
 describe("exact Poisson limits (Garwood 1936, Biometrika 28:437; values of R 4.2.2 and SciPy)", () => {
   const of = reference("REF-POIS-TABLE");
-  test.each(of.expected.tables.map((t: { confidence: number }) => [t.confidence, t]))(
-    "table at %d",
-    (confidence, table) => {
-      (table as { n: number[] }).n.forEach((n, i) => {
-        const got = poissonLimits(n, confidence as number);
-        near(got.lo, (table as { lo: number[] }).lo[i]!, of, `lo of ${n}`);
-        near(got.hi, (table as { hi: number[] }).hi[i]!, of, `hi of ${n}`);
-      });
-    },
-  );
+  const tables = of.expected.tables as { confidence: number; n: number[]; lo: number[]; hi: number[] }[];
+  test.each(tables)("table at $confidence", ({ confidence, n, lo, hi }) => {
+    n.forEach((count, i) => {
+      const got = poissonLimits(count, confidence);
+      near(got.lo, lo[i]!, of, `lo of ${count}`);
+      near(got.hi, hi[i]!, of, `hi of ${count}`);
+    });
+  });
 });
 
 test("chi-square quantiles from 1 to 2,000,000 degrees of freedom (mathematical fact; R 4.2.2)", () => {
