@@ -70,3 +70,10 @@ export async function expectNoAxe(page: Page): Promise<void> {
   }
   await page.emulateMedia({ colorScheme: null });
 }
+
+/** Enters through the demo's door as the person with this address. */
+export async function enterAs(page: Page, email: string): Promise<void> {
+  await page.goto("/door");
+  await page.locator(`form:has(input[name="email"][value="${email}"])`).getByRole("button").click();
+  await page.waitForURL((url) => !/^\/(door|enter|api)/.test(url.pathname));
+}
