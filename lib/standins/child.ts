@@ -1,11 +1,10 @@
 import { spawn, type ChildProcess } from "node:child_process";
 import { createWriteStream, mkdirSync, readFileSync } from "node:fs";
-import { connect } from "node:net";
 import { dirname } from "node:path";
 import { Plain } from "./plain";
 
-/** How to know that a process does its work: it says so, answers a URL, or accepts on a port. */
-export type Probe = { url: string } | { port: number } | "message";
+/** How to know that a process does its work: it answers a URL, or says so over the channel. */
+export type Probe = { url: string } | "message";
 
 export type ChildOptions = {
   name: string;
@@ -51,16 +50,9 @@ export function childEnv(more: Record<string, string>): NodeJS.ProcessEnv {
 
 async function answers(probe: Probe, said: boolean): Promise<boolean> {
   if (probe === "message") return said;
-  if ("url" in probe) {
-    const answer = await fetch(probe.url, { signal: AbortSignal.timeout(5000) }).catch(() => undefined);
-    await answer?.arrayBuffer().catch(() => undefined);
-    return answer?.ok ?? false;
-  }
-  return new Promise((done) => {
-    const socket = connect(probe.port, "127.0.0.1");
-    socket.once("connect", () => done(true)).once("error", () => done(false));
-    socket.once("connect", () => socket.end()).once("close", () => socket.destroy());
-  });
+  const answer = await fetch(probe.url, { signal: AbortSignal.timeout(5000) }).catch(() => undefined);
+  await answer?.arrayBuffer().catch(() => undefined);
+  return answer?.ok ?? false;
 }
 
 /** Starts a process, keeps it running, and stops it when asked. Its words go to a log file. */

@@ -130,7 +130,9 @@ export async function startAll(options: StartOptions): Promise<System> {
         start("uploadhost", runTs("lib/standins/uploadhost.ts"), {
           url: `http://127.0.0.1:${ports.upload}/health`,
         }),
-        start("mailhost", runTs("lib/standins/mailhost.ts"), { url: `http://127.0.0.1:${ports.mailPage}/` }),
+        start("mailhost", runTs("lib/standins/mailhost.ts"), {
+          url: `http://127.0.0.1:${ports.mailPage}/health`,
+        }),
       ];
       await Promise.all(hosts.map((host) => host.ready()));
     }
@@ -148,7 +150,7 @@ export async function startAll(options: StartOptions): Promise<System> {
     if (cluster && fresh) await markDatabase(cluster, options.demo ? DEMO_MADE : NO_DEMO);
 
     const workers = [
-      start("receiver", runTs("lib/mail/receiver.io.ts"), { port: Number(env.RECEIVER_PORT) }),
+      start("receiver", runTs("lib/mail/receiver.io.ts"), "message"),
       start("worker", runTs("lib/jobs/worker.io.ts"), "message"),
     ];
     const built = await build;
