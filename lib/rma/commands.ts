@@ -165,31 +165,27 @@ export async function authorizeRma(
           sort,
         });
         for (const fee of (decision.answer as Decision).fees.filter((f) => f.kind === "no_fault_found")) {
-          await ctx.tx
-            .insert(feeNotices)
-            .values({
-              id: ctx.newId(),
-              rmaLineId: lineId,
-              accountId,
-              kind: "no_fault_found",
-              cents: fee.cents,
-              currency: "EUR",
-              words: fee.words,
-              noticedAt: ctx.now,
-            });
+          await ctx.tx.insert(feeNotices).values({
+            id: ctx.newId(),
+            rmaLineId: lineId,
+            accountId,
+            kind: "no_fault_found",
+            cents: fee.cents,
+            currency: "EUR",
+            words: fee.words,
+            noticedAt: ctx.now,
+          });
           fees.push(`${fee.words} ${euros(fee.cents)}.`);
         }
       }
-      await ctx.tx
-        .insert(parcels)
-        .values({
-          id: ctx.newId(),
-          rmaId,
-          siteId: site.id,
-          state: "expected",
-          expectedOn: expiresOn,
-          createdAt: ctx.now,
-        });
+      await ctx.tx.insert(parcels).values({
+        id: ctx.newId(),
+        rmaId,
+        siteId: site.id,
+        state: "expected",
+        expectedOn: expiresOn,
+        createdAt: ctx.now,
+      });
       const entry = await recordEntry(ctx, {
         ticketId: v.ticketId,
         kind: "rma_authorized",

@@ -26,7 +26,7 @@ export default async function Desk({
         when={`${showLongDay(ctx.now, first.zone)}, ${showClock(ctx.now, first.zone)}.`}
         held={held
           .slice(0, 5)
-          .map((h) => ({ id: h.id, subject: h.subject, fromEmail: h.fromEmail, reason: h.reason }))}
+          .map((h) => ({ id: h.heldId, subject: h.subject, fromEmail: h.fromEmail, reason: h.reason }))}
         heldCount={held.length}
       />
     </main>
