@@ -5,17 +5,8 @@ import { ensureBuilt } from "./build";
 import { runOnce, startChild, type Child, type Probe } from "./child";
 import { Plain } from "./plain";
 import { takePort } from "./ports";
-import {
-  databaseMark,
-  dropDatabase,
-  endLeftover,
-  ensureDatabase,
-  markDatabase,
-  isAlive,
-  removeHome,
-  startPostgres,
-  type Cluster,
-} from "./postgres";
+import { databaseMark, dropDatabase, ensureDatabase, markDatabase } from "./databases";
+import { endLeftover, isAlive, removeHome, startPostgres, type Cluster } from "./postgres";
 import { clusterHome, keptSettings, prepareFolder, takeFolder } from "./settings";
 import { uploadToken } from "./uploadhost";
 

@@ -1,12 +1,9 @@
-import { createHash } from "node:crypto";
-import { createReadStream, mkdirSync, readdirSync, statSync, unlinkSync } from "node:fs";
-import { open, readFile, rename, stat, unlink, writeFile } from "node:fs/promises";
 import { createServer, type IncomingMessage, type Server, type ServerResponse } from "node:http";
-import { join } from "node:path";
 import { pipeline } from "node:stream/promises";
 import { fileURLToPath } from "node:url";
 import { onePart } from "./multipart";
 import { checkSigned, sign, twice } from "./uploadsign";
+import { Refused, UploadStore, type Meta, type Side } from "./uploadstore";
 
 /**
  * Local stand-in for the upload service: the wire protocol of the uploadthing 7 client, bytes on
@@ -23,12 +20,8 @@ export type UploadHostOptions = {
   now?: () => number;
 };
 
-type Meta = { callbackUrl: string; callbackSlug: string; metadata: unknown; awaitServerData: boolean };
-type Side = { name: string; size: number; type: string; acl: string; customId: string | null; md5: string };
 type Outcome = { data: unknown } | { error: string };
 
-const KEY = /^[A-Za-z0-9]{20,80}$/;
-const STALE_MS = 24 * 3600_000;
 const META_WAIT_MS = 5000;
 const LOOPBACK = new Set(["127.0.0.1", "localhost", "[::1]"]);
 
@@ -40,39 +33,21 @@ const CORS = {
   "access-control-max-age": "600",
 };
 
-class Refused extends Error {
-  constructor(
-    readonly status: number,
-    message: string,
-  ) {
-    super(message);
-  }
-}
-
 export function createUploadHost(options: UploadHostOptions): Server {
   const host = new UploadHost(options);
   return createServer((request, response) => void host.handle(request, response));
 }
 
 class UploadHost {
-  private readonly promised = new Map<string, Meta>();
   private readonly asking = new Map<string, (meta: Meta) => void>();
   private readonly results = new Map<string, (outcome: Outcome) => void>();
   private readonly running = new Map<string, { request: IncomingMessage; done: Promise<void> }>();
   private readonly now: () => number;
+  private readonly store: UploadStore;
 
   constructor(private readonly options: UploadHostOptions) {
     this.now = options.now ?? Date.now;
-    mkdirSync(options.dir, { recursive: true, mode: 0o700 });
-    for (const name of readdirSync(options.dir)) {
-      const at = join(options.dir, name);
-      if (/\.(part|meta\.json)$/.test(name) && statSync(at).mtimeMs < this.now() - STALE_MS) unlinkSync(at);
-    }
-  }
-
-  private at(key: string, kind: "part" | "bin" | "json" | "meta.json"): string {
-    if (!KEY.test(key)) throw new Refused(400, "no such key");
-    return join(this.options.dir, `${key}.${kind}`);
+    this.store = new UploadStore(options.dir, this.now());
   }
 
   async handle(request: IncomingMessage, response: ServerResponse): Promise<void> {
@@ -118,8 +93,7 @@ class UploadHost {
   }
 
   private async held(response: ServerResponse, key: string): Promise<void> {
-    const size = (await sizeOf(this.at(key, "part"))) ?? (await sizeOf(this.at(key, "bin"))) ?? 0;
-    response.writeHead(200, { ...CORS, "x-ut-range-start": String(size) }).end();
+    response.writeHead(200, { ...CORS, "x-ut-range-start": String(await this.store.held(key)) }).end();
   }
 
   private async take(
@@ -128,7 +102,7 @@ class UploadHost {
     key: string,
     query: URLSearchParams,
   ) {
-    if ((await sizeOf(this.at(key, "bin"))) !== undefined) throw new Refused(409, "the file is here already");
+    if (await this.store.isWhole(key)) throw new Refused(409, "the file is here already");
     const older = this.running.get(key);
     if (older) {
       // The browser broke off and came back before we noticed: the old body ends now.
@@ -141,7 +115,7 @@ class UploadHost {
       const side = await this.receive(request, key, query);
       const outcome = await this.report(key, query, side);
       if ("error" in outcome) {
-        await this.forget(key);
+        await this.store.forget(key);
         return json(response, 200, { error: outcome.error });
       }
       const url = `${this.options.base}/f/${key}`;
@@ -153,46 +127,32 @@ class UploadHost {
     }
   }
 
-  /** Streams the body to disk from the offset that `Range` names; what arrived stays when it breaks off. */
+  /** Takes the body from the offset that `Range` names; what arrived stays when it breaks off. */
   private async receive(request: IncomingMessage, key: string, query: URLSearchParams): Promise<Side> {
     const expected = Number(query.get("x-ut-file-size"));
     const from = Number(/^bytes=(\d+)-/.exec(request.headers.range ?? "bytes=0-")?.[1] ?? 0);
-    const part = this.at(key, "part");
-    if (from > ((await sizeOf(part)) ?? 0))
-      throw new Refused(416, "more is asked to be skipped than is here");
-    const file = await open(part, from > 0 ? "r+" : "w", 0o600);
-    let at = from;
     try {
-      await file.truncate(from);
-      for await (const bytes of onePart(request)) {
-        if (at + bytes.length > expected) throw new Refused(400, "more bytes than were announced");
-        await file.write(bytes, 0, bytes.length, at);
-        at += bytes.length;
-        if (this.options.chunkDelayMs)
-          await new Promise((done) => setTimeout(done, this.options.chunkDelayMs));
-      }
-      await file.sync();
+      const size = await this.store.grow(key, from, expected, this.slowed(onePart(request)));
+      if (size !== expected) throw new Refused(400, "fewer bytes than were announced");
+      return await this.store.finish(key, {
+        name: twice(query, "x-ut-file-name") ?? key,
+        size,
+        type: twice(query, "x-ut-file-type") ?? "application/octet-stream",
+        acl: query.get("x-ut-acl") ?? "private",
+        customId: twice(query, "x-ut-custom-id") ?? null,
+      });
     } catch (thrown) {
-      if (thrown instanceof Refused) await this.forget(key);
+      // Broken off is no refusal: what is here waits for the rest.
+      if (thrown instanceof Refused && thrown.status !== 416) await this.store.forget(key);
       throw thrown;
-    } finally {
-      await file.close();
     }
-    if (at !== expected) {
-      await this.forget(key);
-      throw new Refused(400, "fewer bytes than were announced");
+  }
+
+  private async *slowed(bytes: AsyncIterable<Buffer>): AsyncGenerator<Buffer> {
+    for await (const chunk of bytes) {
+      yield chunk;
+      if (this.options.chunkDelayMs) await new Promise((done) => setTimeout(done, this.options.chunkDelayMs));
     }
-    const side: Side = {
-      name: twice(query, "x-ut-file-name") ?? key,
-      size: at,
-      type: twice(query, "x-ut-file-type") ?? "application/octet-stream",
-      acl: query.get("x-ut-acl") ?? "private",
-      customId: twice(query, "x-ut-custom-id") ?? null,
-      md5: await md5Of(part),
-    };
-    await writeFile(this.at(key, "json"), JSON.stringify(side), { mode: 0o600 });
-    await rename(part, this.at(key, "bin"));
-    return side;
   }
 
   /** Tells the application, by its own signed callback, and waits for what it answers. */
@@ -239,16 +199,13 @@ class UploadHost {
       return { error: "the application could not be reached" };
     } finally {
       this.results.delete(key);
-      this.promised.delete(key);
-      await unlink(this.at(key, "meta.json")).catch(() => undefined);
+      await this.store.fulfil(key);
     }
   }
 
   private async metaOf(key: string): Promise<Meta | undefined> {
-    const known = this.promised.get(key);
-    if (known) return known;
-    const kept = await readFile(this.at(key, "meta.json"), "utf8").catch(() => undefined);
-    if (kept) return JSON.parse(kept) as Meta;
+    const kept = await this.store.promised(key);
+    if (kept) return kept;
     return new Promise((done) => {
       const timer = setTimeout(() => done(undefined), META_WAIT_MS);
       this.asking.set(key, (meta) => {
@@ -274,19 +231,19 @@ class UploadHost {
       }
       case "/v6/deleteFiles": {
         let deletedCount = 0;
-        for (const key of listOf(body.fileKeys)) if (await this.forget(key)) deletedCount++;
+        for (const key of listOf(body.fileKeys)) if (await this.store.forget(key)) deletedCount++;
         return json(response, 200, { success: true, deletedCount });
       }
       case "/v6/updateACL": {
         for (const { fileKey, acl } of body.updates as { fileKey: string; acl: string }[]) {
-          const side = await this.sideOf(fileKey);
-          if (side) await writeFile(this.at(fileKey, "json"), JSON.stringify({ ...side, acl }));
+          const side = await this.store.side(fileKey);
+          if (side) await this.store.describe(fileKey, { ...side, acl });
         }
         return json(response, 200, { success: true });
       }
       case "/v6/requestFileAccess": {
         const key = String(body.fileKey);
-        if (!(await this.sideOf(key))) throw new Refused(404, "not found");
+        if (!(await this.store.side(key))) throw new Refused(404, "not found");
         const expires = this.now() + Number(body.expiresIn ?? 300) * 1000;
         const text = `${this.options.base}/f/${key}?expires=${expires}`;
         const url = `${text}&signature=${encodeURIComponent(sign(text, this.options.apiKey))}`;
@@ -310,26 +267,13 @@ class UploadHost {
       awaitServerData: body.awaitServerData !== false,
     };
     for (const key of listOf(body.fileKeys)) {
-      await writeFile(this.at(key, "meta.json"), JSON.stringify(meta), { mode: 0o600 });
-      this.promised.set(key, meta);
+      await this.store.promise(key, meta);
       this.asking.get(key)?.(meta);
     }
   }
 
-  private async sideOf(key: string): Promise<Side | undefined> {
-    const text = await readFile(this.at(key, "json"), "utf8").catch(() => undefined);
-    return text ? (JSON.parse(text) as Side) : undefined;
-  }
-
-  private async forget(key: string): Promise<boolean> {
-    const there = (await sizeOf(this.at(key, "bin"))) !== undefined;
-    for (const kind of ["bin", "json", "part", "meta.json"] as const)
-      await unlink(this.at(key, kind)).catch(() => undefined);
-    return there;
-  }
-
   private async serve(response: ServerResponse, target: string, key: string): Promise<void> {
-    const side = await this.sideOf(key);
+    const side = await this.store.side(key);
     if (side?.acl !== "public-read") {
       const signed = checkSigned(this.options.base, target, this.options.apiKey, this.now());
       if (!signed.ok) throw new Refused(403, signed.words);
@@ -343,7 +287,7 @@ class UploadHost {
       "content-security-policy": "sandbox; default-src 'none'",
       "cache-control": "no-store",
     });
-    await pipeline(createReadStream(this.at(key, "bin")), response);
+    await pipeline(this.store.read(key), response);
   }
 }
 
@@ -368,19 +312,6 @@ async function readJson(request: IncomingMessage): Promise<Record<string, unknow
 }
 
 const listOf = (value: unknown): string[] => (Array.isArray(value) ? value.map(String) : []);
-
-async function sizeOf(path: string): Promise<number | undefined> {
-  return stat(path).then(
-    (found) => found.size,
-    () => undefined,
-  );
-}
-
-async function md5Of(path: string): Promise<string> {
-  const hash = createHash("md5");
-  for await (const chunk of createReadStream(path)) hash.update(chunk as Buffer);
-  return hash.digest("hex");
-}
 
 /** The token both sides share, as the client library wants it. */
 export function uploadToken(at: { apiKey: string; appId: string }): string {

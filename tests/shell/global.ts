@@ -2,7 +2,8 @@ import { tmpdir } from "node:os";
 import { join } from "node:path";
 import type { TestProject } from "vitest/node";
 import { migrateDatabase } from "@/db/migrate";
-import { ensureDatabase, removeHome, startPostgres, sweepHomes } from "@/lib/standins/postgres";
+import { ensureDatabase } from "@/lib/standins/databases";
+import { removeHome, startPostgres, sweepHomes } from "@/lib/standins/postgres";
 
 declare module "vitest" {
   interface ProvidedContext {

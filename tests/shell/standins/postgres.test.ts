@@ -3,15 +3,8 @@ import { tmpdir } from "node:os";
 import { join } from "node:path";
 import pg from "pg";
 import { afterAll, expect, test } from "vitest";
-import {
-  databaseMark,
-  endLeftover,
-  ensureDatabase,
-  markDatabase,
-  removeHome,
-  startPostgres,
-  type Cluster,
-} from "@/lib/standins/postgres";
+import { databaseMark, ensureDatabase, markDatabase } from "@/lib/standins/databases";
+import { endLeftover, removeHome, startPostgres, type Cluster } from "@/lib/standins/postgres";
 
 /* The private cluster: made once, kept, found again after a kill, closed to others. */
 
