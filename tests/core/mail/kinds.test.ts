@@ -40,7 +40,10 @@ describe("kinds", () => {
   });
 
   test("a list's mail is filed, and not answered", () => {
-    for (const headers of [{ "List-Id": "<ops.pinnock.example>" }, { Precedence: "bulk" }])
+    for (const headers of <Record<string, string>[]>[
+      { "List-Id": "<ops.pinnock.example>" },
+      { Precedence: "bulk" },
+    ])
       expect(kindOf(mail(headers))).toMatchObject({ kind: "list", mayAnswer: false });
   });
 
