@@ -1,12 +1,9 @@
 import type { Ctx } from "@/lib/ctx";
+import { travelerPdf } from "@/lib/rma/papers.queries";
 
-type Draw = (ctx: Ctx, id: string) => Promise<Buffer>;
-
-/** Papers that go with a mail, drawn when it leaves: each by its module, loaded when it is needed. */
-const PAPERS: Record<string, () => Promise<Draw>> = {};
-
+/** Papers that go with a mail, drawn when it leaves. @throws Error when there is no such paper. */
 export async function drawPaper(ctx: Ctx, paper: string, id: string): Promise<Buffer> {
-  const load = PAPERS[paper];
-  if (!load) throw new Error(`nobody draws the paper ${paper}`);
-  return (await load())(ctx, id);
+  const drawn = paper === "traveler" ? await travelerPdf(ctx, id) : null;
+  if (!drawn) throw new Error(`there is no paper ${paper} ${id}`);
+  return drawn.pdf;
 }
