@@ -1,3 +1,4 @@
+import Link from "next/link";
 import type { ReactNode } from "react";
 import { leave } from "@/app/(door)/actions";
 import { requireCustomer } from "@/app/_edge/ctx";
@@ -24,8 +25,8 @@ export default async function PortalLayout({ children }: { children: ReactNode }
           </div>
         </header>
         <nav className="pnav" aria-label="Your pages">
-          <a href="/equipment">Your equipment</a>
-          <a href="/cases">Your cases</a>
+          <Link href="/equipment">Your equipment</Link>
+          <Link href="/cases">Your cases</Link>
           <form action={leave}>
             <button type="submit" className="linklike">
               Sign out

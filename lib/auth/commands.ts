@@ -73,13 +73,11 @@ export async function issueCode(
     const code = newCode();
     if (!user || user.ended) return ok<Issued>(null);
     await ctx.tx.delete(verificationTokens).where(lt(verificationTokens.expires, ctx.now));
-    await ctx.tx
-      .insert(verificationTokens)
-      .values({
-        identifier: email,
-        token: hashCode(code),
-        expires: new Date(ctx.now.getTime() + CODE_MINUTES * 60_000),
-      });
+    await ctx.tx.insert(verificationTokens).values({
+      identifier: email,
+      token: hashCode(code),
+      expires: new Date(ctx.now.getTime() + CODE_MINUTES * 60_000),
+    });
     await audit(ctx, { act: "auth.issue_code", subject: ["user", user.id] });
     return ok<Issued>({ code, email });
   });

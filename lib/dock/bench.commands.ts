@@ -50,19 +50,17 @@ export async function startBench(
     const sheet = sheetFor(line.family);
     const testId = ctx.newId();
     const rma = (await rmaById(ctx, line.rmaId))!;
-    await ctx.tx
-      .insert(benchTests)
-      .values({
-        id: testId,
-        rmaLineId: line.lineId,
-        accountId: rma.accountId,
-        unitId: line.unitId,
-        sheet: sheet.code,
-        sheetIssue: sheet.issue,
-        startedAt: ctx.now,
-        startedByName: actorName(ctx.actor),
-        scanIn: input.value.scan,
-      });
+    await ctx.tx.insert(benchTests).values({
+      id: testId,
+      rmaLineId: line.lineId,
+      accountId: rma.accountId,
+      unitId: line.unitId,
+      sheet: sheet.code,
+      sheetIssue: sheet.issue,
+      startedAt: ctx.now,
+      startedByName: actorName(ctx.actor),
+      scanIn: input.value.scan,
+    });
     const entry = await recordEntry(ctx, {
       ticketId: line.ticketId,
       kind: "bench_started",
@@ -160,16 +158,14 @@ export async function closeBench(
     });
     if (!verdict.ok) return verdict;
     if (v.sanitization)
-      await ctx.tx
-        .insert(sanitizationRecords)
-        .values({
-          id: ctx.newId(),
-          unitId: line.unitId,
-          benchTestId: v.testId,
-          ...v.sanitization,
-          doneAt: ctx.now,
-          doneByName: actorName(ctx.actor),
-        });
+      await ctx.tx.insert(sanitizationRecords).values({
+        id: ctx.newId(),
+        unitId: line.unitId,
+        benchTestId: v.testId,
+        ...v.sanitization,
+        doneAt: ctx.now,
+        doneByName: actorName(ctx.actor),
+      });
     await ctx.tx
       .update(benchTests)
       .set({
@@ -246,18 +242,16 @@ async function ship(
   tracking: string,
 ): Promise<string> {
   const id = ctx.newId();
-  await ctx.tx
-    .insert(shipments)
-    .values({
-      id,
-      rmaId: line.rmaId,
-      accountId,
-      direction: "out",
-      carrier,
-      tracking,
-      shippedAt: ctx.now,
-      shippedByName: actorName(ctx.actor),
-    });
+  await ctx.tx.insert(shipments).values({
+    id,
+    rmaId: line.rmaId,
+    accountId,
+    direction: "out",
+    carrier,
+    tracking,
+    shippedAt: ctx.now,
+    shippedByName: actorName(ctx.actor),
+  });
   return id;
 }
 

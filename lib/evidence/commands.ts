@@ -103,16 +103,14 @@ export async function startReport(
   if (actor.kind !== "customer") return refuse("forbidden", "Reports are written by customers.");
   return transact(ctx, async (ctx) => {
     const reportId = ctx.newId();
-    await ctx.tx
-      .insert(reports)
-      .values({
-        id: reportId,
-        accountId: actor.accountId,
-        userId: actor.userId,
-        answers,
-        createdAt: ctx.now,
-        updatedAt: ctx.now,
-      });
+    await ctx.tx.insert(reports).values({
+      id: reportId,
+      accountId: actor.accountId,
+      userId: actor.userId,
+      answers,
+      createdAt: ctx.now,
+      updatedAt: ctx.now,
+    });
     await audit(ctx, { act: "report.start", subject: ["report", reportId] });
     return ok({ reportId });
   });

@@ -1,3 +1,4 @@
+/* eslint-disable jsx-a11y/alt-text -- pictures of a sheet of paper, their text stands beside them */
 import { join } from "node:path";
 import {
   Circle,

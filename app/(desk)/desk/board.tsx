@@ -1,7 +1,8 @@
 "use client";
+import Link from "next/link";
 import { useQuery } from "@tanstack/react-query";
 import { useRouter } from "next/navigation";
-import { useCallback, useEffect, useState } from "react";
+import { useEffect, useEffectEvent, useState } from "react";
 import { CoverGlyph } from "@/components/coverage/glyph";
 import { Ruler } from "@/components/coverage/ruler";
 import { EvidenceMarks } from "@/components/evidence/marks";
@@ -46,35 +47,33 @@ function Board({ first, q, when, held, heldCount }: Props) {
   const [chosen, setChosen] = useState<string | null>(null);
   const current = rows.find((r) => r.id === chosen) ?? rows[0];
 
-  const move = useCallback(
-    (by: number) => {
-      const at = rows.findIndex((r) => r.id === current?.id);
-      const next = rows[Math.min(rows.length - 1, Math.max(0, at + by))];
-      if (!next) return;
-      setChosen(next.id);
-      document.getElementById(`row-${next.id}`)?.scrollIntoView({ block: "nearest" });
-    },
-    [rows, current?.id],
-  );
+  const move = (by: number) => {
+    const at = rows.findIndex((r) => r.id === current?.id);
+    const next = rows[Math.min(rows.length - 1, Math.max(0, at + by))];
+    if (!next) return;
+    setChosen(next.id);
+    document.getElementById(`row-${next.id}`)?.scrollIntoView({ block: "nearest" });
+  };
 
+  const onKey = useEffectEvent((e: KeyboardEvent) => {
+    if (inField(e.target) || e.metaKey || e.ctrlKey || e.altKey) return;
+    if (e.key === "j") move(1);
+    else if (e.key === "k") move(-1);
+    else if (
+      e.key === "Enter" &&
+      current &&
+      !(e.target instanceof HTMLAnchorElement) &&
+      !(e.target instanceof HTMLButtonElement)
+    )
+      router.push(`/desk/${current.number}`);
+    else return;
+    e.preventDefault();
+  });
   useEffect(() => {
-    const onKey = (e: KeyboardEvent) => {
-      if (inField(e.target) || e.metaKey || e.ctrlKey || e.altKey) return;
-      if (e.key === "j") move(1);
-      else if (e.key === "k") move(-1);
-      else if (
-        e.key === "Enter" &&
-        current &&
-        !(e.target instanceof HTMLAnchorElement) &&
-        !(e.target instanceof HTMLButtonElement)
-      )
-        router.push(`/desk/${current.number}`);
-      else return;
-      e.preventDefault();
-    };
-    window.addEventListener("keydown", onKey);
-    return () => window.removeEventListener("keydown", onKey);
-  }, [move, router, current]);
+    const listen = (e: KeyboardEvent) => onKey(e);
+    window.addEventListener("keydown", listen);
+    return () => window.removeEventListener("keydown", listen);
+  }, []);
 
   return (
     <>
@@ -112,7 +111,7 @@ function Board({ first, q, when, held, heldCount }: Props) {
           placeholder="anything"
           autoComplete="off"
         />
-        {q ? <a href="/desk">show all</a> : null}
+        {q ? <Link href="/desk">show all</Link> : null}
       </form>
       {rows.length === 0 ? (
         <Empty title={q ? `Nothing open is about “${q}”.` : "Nothing is open."}>

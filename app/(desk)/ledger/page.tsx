@@ -1,3 +1,4 @@
+import Link from "next/link";
 import type { Metadata } from "next";
 import { requireStaff } from "@/app/_edge/ctx";
 import { CoverGlyph } from "@/components/coverage/glyph";
@@ -46,7 +47,7 @@ export default async function Ledger({
         <label htmlFor="ledger-q">Serial, order or customer</label>
         <input id="ledger-q" name="q" className="in m" defaultValue={q} autoComplete="off" />
         <Button kind="line">Find</Button>
-        {q ? <a href="/ledger">show all</a> : null}
+        {q ? <Link href="/ledger">show all</Link> : null}
       </form>
       {rows.length === 0 ? (
         <Empty title={q ? `Nothing in the ledger answers to ${q}.` : "The ledger is empty."}>

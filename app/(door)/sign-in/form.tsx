@@ -8,7 +8,7 @@ import { askForLink } from "../actions";
 export function AskForm({ next }: { next: string }) {
   const [state, send, busy] = useActionState(askForLink, UNSENT);
   return (
-    <form action={send} method="post" noValidate>
+    <form action={send} noValidate>
       <input type="hidden" name="next" value={next} />
       <Field
         label="E-mail address"

@@ -41,7 +41,7 @@ export default async function Equipment({
         </p>
       ) : null}
       <div className="prow">
-        <form action={begin} method="post">
+        <form action={begin}>
           <Button type="submit">Report a fault</Button>
         </form>
         <span className="hint">Not sure which unit? Start here.</span>
@@ -89,7 +89,7 @@ export default async function Equipment({
                   />
                 ) : null}
                 <div className="act">
-                  <form action={begin} method="post">
+                  <form action={begin}>
                     <input type="hidden" name="unitId" value={r.unitId} />
                     <button type="submit" className="linklike">
                       Report a fault<span className="vh"> of {r.serial}</span>

@@ -17,7 +17,7 @@ const problems = (state: FormState<unknown>) => {
 export function ScanInForm({ lineId, serial }: { lineId: string; serial: string }) {
   const [state, send, busy] = useActionState(scanIn, UNSENT as FormState<never>);
   return (
-    <form action={send} method="post" className="actform">
+    <form action={send} className="actform">
       <ErrorSummary title="The test has not begun" items={problems(state)} />
       <input type="hidden" name="lineId" value={lineId} />
       <Field
@@ -73,7 +73,7 @@ export function CloseForm({ lineId, testId, serial, dataBearing, open, dispositi
   const kept = (name: string) =>
     typeof state.values?.[name] === "string" ? (state.values[name] as string) : "";
   return (
-    <form action={send} method="post" key={kept("finding")}>
+    <form action={send} key={kept("finding")}>
       <ErrorSummary title="The record stays open" items={problems(state)} />
       <input type="hidden" name="lineId" value={lineId} />
       <input type="hidden" name="testId" value={testId} />

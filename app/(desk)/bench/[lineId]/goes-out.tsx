@@ -44,7 +44,7 @@ export function GoesOut({ lineId, remedy, disposition, outcome, candidates }: Pr
   const others = candidates.filter((c) => !c.fits).slice(0, 6);
   if (remedy === "credit" || remedy === "refund") {
     return (
-      <form action={sendMoney} method="post" className="actform">
+      <form action={sendMoney} className="actform">
         <h2>What goes out</h2>
         <ErrorSummary title="Not settled" items={problems(moneyState)} />
         <input type="hidden" name="lineId" value={lineId} />
@@ -55,7 +55,7 @@ export function GoesOut({ lineId, remedy, disposition, outcome, candidates }: Pr
   }
   if (sameBack) {
     return (
-      <form action={sendBackForm} method="post" className="actform">
+      <form action={sendBackForm} className="actform">
         <h2>What goes out</h2>
         <ErrorSummary title="Not sent" items={problems(backState)} />
         <input type="hidden" name="lineId" value={lineId} />
@@ -71,7 +71,7 @@ export function GoesOut({ lineId, remedy, disposition, outcome, candidates }: Pr
     );
   }
   return (
-    <form action={send} method="post" className="actform" key={kept("serial")}>
+    <form action={send} className="actform" key={kept("serial")}>
       <h2>What goes out</h2>
       <ErrorSummary title="Nothing was shipped" items={problems(state)} />
       <input type="hidden" name="lineId" value={lineId} />

@@ -85,7 +85,7 @@ function StepForm({
   const r = step.reading;
   const words = state.fields?.value?.[0] ?? (state.ok ? undefined : state.message);
   return (
-    <form action={send} method="post" className="stepform">
+    <form action={send} className="stepform">
       <b className="stept">{step.title}</b>
       <span className="s stepd">{step.detail}</span>
       <ErrorSummary

@@ -108,7 +108,7 @@ export function Acts({ ticketId, number, closed, units }: Props) {
 function TieForm({ ticketId, number }: { ticketId: string; number: number }) {
   const [state, send, busy] = useActionState(tie, UNSENT as FormState<never>);
   return (
-    <form action={send} method="post" className="actform">
+    <form action={send} className="actform">
       <ErrorSummary title="Not tied" items={problems(state)} />
       <Hidden ticketId={ticketId} number={number} />
       <Field
@@ -131,7 +131,7 @@ function DecideForm({ ticketId, number, units }: { ticketId: string; number: num
   const [state, send, busy] = useActionState(decide, UNSENT as FormState<never>);
   const [fault, setFault] = useState(units[0]?.faultClass ?? "");
   return (
-    <form action={send} method="post" className="actform">
+    <form action={send} className="actform">
       <ErrorSummary title="No decision was taken" items={problems(state)} />
       <Hidden ticketId={ticketId} number={number} />
       {units.length > 1 ? (
@@ -179,7 +179,7 @@ function AuthorizeForm({ ticketId, number, units }: { ticketId: string; number: 
   );
   const other = state.details?.ticketNumber;
   return (
-    <form action={send} method="post" className="actform">
+    <form action={send} className="actform">
       <ErrorSummary title="This RMA was not authorized" items={problems(state)} />
       {other ? (
         <p>
@@ -237,7 +237,7 @@ function AuthorizeForm({ ticketId, number, units }: { ticketId: string; number: 
 function DeclineForm({ ticketId, number, units }: { ticketId: string; number: number; units: UnitAct[] }) {
   const [state, send, busy] = useActionState(decline, UNSENT as FormState<never>);
   return (
-    <form action={send} method="post" className="actform">
+    <form action={send} className="actform">
       <ErrorSummary title="Nothing was sent" items={problems(state)} />
       <Hidden ticketId={ticketId} number={number} />
       {units.length > 1 ? (
@@ -267,7 +267,7 @@ function DeclineForm({ ticketId, number, units }: { ticketId: string; number: nu
 function CloseForm({ ticketId, number }: { ticketId: string; number: number }) {
   const [state, send, busy] = useActionState(close, UNSENT as FormState<never>);
   return (
-    <form action={send} method="post" className="actform">
+    <form action={send} className="actform">
       <ErrorSummary title="It was not closed" items={problems(state)} />
       <Hidden ticketId={ticketId} number={number} />
       <Field label="Why nothing more is to do" name="reason" />

@@ -61,7 +61,6 @@ export function Composer({ ticketId, number, personName, nextMail, faultClass, r
         localStorage.removeItem(key);
         send(form);
       }}
-      method="post"
       className="composer"
       aria-label="Next entry"
     >

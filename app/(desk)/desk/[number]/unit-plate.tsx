@@ -35,11 +35,11 @@ export function UnitPlate({
         </p>
       ) : null}
       <div className="acts">
-        <form action={sendTie} method="post">
+        <form action={sendTie}>
           {hidden}
           <Button aria-disabled={tying}>Tie this unit</Button>
         </form>
-        <form action={sendDismiss} method="post">
+        <form action={sendDismiss}>
           {hidden}
           <Button kind="line" aria-disabled={dismissing}>
             Not this one

@@ -1,3 +1,4 @@
+import Link from "next/link";
 import type { Metadata } from "next";
 import { notFound } from "next/navigation";
 import { requireStaff } from "@/app/_edge/ctx";
@@ -87,7 +88,7 @@ export default async function TermsVersion({ params }: { params: Promise<{ versi
         them.
       </p>
       <p>
-        <a href="/terms">All terms</a>
+        <Link href="/terms">All terms</Link>
       </p>
     </main>
   );

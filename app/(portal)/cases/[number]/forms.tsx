@@ -12,7 +12,7 @@ export function AnswerForm({ ticketId, number }: { ticketId: string; number: num
   const [state, submit, busy] = useActionState(answerCase, UNSENT as FormState<never>);
   const error = state.fields?.text?.[0] ?? (state.ok ? undefined : state.message);
   return (
-    <form action={submit} method="post">
+    <form action={submit}>
       <ErrorSummary title="It was not sent" items={error ? [{ field: "text", message: error }] : []} />
       <input type="hidden" name="ticketId" value={ticketId} />
       <input type="hidden" name="number" value={number} />

@@ -54,7 +54,7 @@ export default async function Unit({ params }: { params: Promise<{ serial: strin
           state={own.state === "ended" ? "ended" : "covered"}
         />
       ) : null}
-      <form action={begin} method="post" className="prow">
+      <form action={begin} className="prow">
         <input type="hidden" name="unitId" value={view.unit.id} />
         <Button type="submit">Report a fault of this unit</Button>
       </form>

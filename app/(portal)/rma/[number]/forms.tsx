@@ -10,7 +10,7 @@ export function SentForm({ rmaId, number }: { rmaId: string; number: string }) {
   const [state, submit, busy] = useActionState(sent, UNSENT as FormState<never>);
   const items = Object.entries(state.fields ?? {}).map(([field, m]) => ({ field, message: m[0]! }));
   return (
-    <form action={submit} method="post">
+    <form action={submit}>
       <ErrorSummary
         title="Not kept yet"
         items={items.length > 0 ? items : state.message && !state.ok ? [{ message: state.message }] : []}
@@ -44,7 +44,7 @@ export function SentForm({ rmaId, number }: { rmaId: string; number: string }) {
 export function WithdrawForm({ rmaId, number }: { rmaId: string; number: string }) {
   const [state, submit, busy] = useActionState(withdraw, UNSENT as FormState<never>);
   return (
-    <form action={submit} method="post">
+    <form action={submit}>
       <ErrorSummary
         title="Not withdrawn"
         items={state.message && !state.ok ? [{ message: state.message }] : []}

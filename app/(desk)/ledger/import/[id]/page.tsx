@@ -1,3 +1,4 @@
+import Link from "next/link";
 import type { Metadata } from "next";
 import { notFound } from "next/navigation";
 import { requireStaff } from "@/app/_edge/ctx";
@@ -67,7 +68,7 @@ export default async function OneImport({
         </section>
       ) : null}
       <p className="pact">
-        <a href="/ledger/import">Import another file</a> <a href="/ledger">Open the ledger</a>
+        <Link href="/ledger/import">Import another file</Link> <Link href="/ledger">Open the ledger</Link>
       </p>
     </main>
   );

@@ -37,7 +37,7 @@ export function ImportState({ first }: { first: Lean }) {
     <section aria-label="How far it is" className="importstate">
       <ErrorSummary title="It did not go on" items={problem ? [{ message: problem }] : []} />
       {now.state === "previewed" ? (
-        <form action={sendAdd} method="post">
+        <form action={sendAdd}>
           <input type="hidden" name="id" value={first.id} />
           <Button aria-disabled={adding} reason={first.rowsGood === 0 ? "No row can be added" : undefined}>
             Add {first.rowsGood} {first.rowsGood === 1 ? "row" : "rows"}
@@ -50,7 +50,7 @@ export function ImportState({ first }: { first: Lean }) {
             share={now.rowsGood === 0 ? 0 : now.rowsDone / now.rowsGood}
             words={`${now.rowsDone} of ${now.rowsGood} rows added. You may leave this page.`}
           />
-          <form action={sendStop} method="post">
+          <form action={sendStop}>
             <input type="hidden" name="id" value={first.id} />
             <Button kind="quiet" aria-disabled={stopping}>
               Stop here

@@ -31,7 +31,7 @@ export function RemedyForm(p: {
   const [state, submit, busy] = useActionState(chooseRemedy, UNSENT as FormState<never>);
   const fields = Object.entries(state.fields ?? {}).map(([field, m]) => ({ field, message: m[0]! }));
   return (
-    <form action={submit} method="post" className="question">
+    <form action={submit} className="question">
       <ErrorSummary
         title="Not yet authorized"
         items={fields.length > 0 ? fields : state.message && !state.ok ? [{ message: state.message }] : []}

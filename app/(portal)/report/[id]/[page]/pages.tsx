@@ -1,4 +1,5 @@
 "use client";
+import Link from "next/link";
 import { useActionState, type ReactNode } from "react";
 import { useRouter } from "next/navigation";
 import { UNSENT, type FormState } from "@/app/_edge/form";
@@ -29,7 +30,7 @@ function Page({
 }: Common & { children: (state: FormState<unknown>) => ReactNode; next?: string }) {
   const [state, submit, busy] = useActionState(answer, UNSENT as FormState<never>);
   return (
-    <form action={submit} method="post" className="question" noValidate>
+    <form action={submit} className="question" noValidate>
       <ErrorSummary title="Before we go on" items={items(state)} />
       <input type="hidden" name="reportId" value={reportId} />
       <input type="hidden" name="page" value={page} />
@@ -42,7 +43,7 @@ function Page({
         {page > 1 ? (
           <a href={`/report/${reportId}/${page - 1}`}>Back</a>
         ) : (
-          <a href="/equipment">Back to your equipment</a>
+          <Link href="/equipment">Back to your equipment</Link>
         )}
       </p>
     </form>
@@ -314,7 +315,7 @@ export function SafetyPage(p: Common) {
 export function CheckPage(p: Common & { facts: { page: number; label: string; value: string }[] }) {
   const [state, submit, busy] = useActionState(send, UNSENT as FormState<never>);
   return (
-    <form action={submit} method="post" className="question">
+    <form action={submit} className="question">
       <ErrorSummary title="It cannot go yet" items={items(state)} />
       <h1>Is this right?</h1>
       <dl className="check">
