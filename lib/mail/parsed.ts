@@ -53,7 +53,17 @@ function isUtf8(bytes: Uint8Array): boolean {
   }
 }
 
+// What windows-1252 has where Latin-1 has control characters (WHATWG Encoding, index windows-1252).
+// The decoder of some runtimes takes the two for one, so it is written out.
+const W1252 = "€\u0081‚ƒ„…†‡ˆ‰Š‹Œ\u008dŽ\u008f\u0090‘’“”•–—˜™š›œ\u009džŸ";
+const windows1252 = (bytes: Uint8Array) =>
+  Buffer.from(bytes)
+    .toString("latin1")
+    .replace(/[\u0080-\u009f]/g, (c) => W1252[c.charCodeAt(0) - 0x80]!);
+
 function decodeAs(bytes: Uint8Array, charset: string): string | null {
+  // By the same standard these names mean windows-1252.
+  if (/^(?:windows-1252|cp1252|iso-8859-1|latin1)$/.test(charset)) return windows1252(bytes);
   try {
     return new TextDecoder(charset, { fatal: true }).decode(bytes);
   } catch {
@@ -79,9 +89,7 @@ export function asUtf8(raw: Buffer): { bytes: Buffer; guessed: string | null } {
   if (headIsFine && !bodyIsOurs) return { bytes: raw, guessed: null };
   const guess = (bytes: Uint8Array): [string, string] => {
     const byName = named ? decodeAs(bytes, named) : null;
-    return byName !== null && named
-      ? [byName, named]
-      : [new TextDecoder("windows-1252").decode(bytes), "windows-1252"];
+    return byName !== null && named ? [byName, named] : [windows1252(bytes), "windows-1252"];
   };
   const [headText, headSet] = headIsFine ? [head.toString("utf8"), ""] : guess(head);
   const [bodyText, bodySet] = bodyIsOurs ? guess(body) : ["", ""];
