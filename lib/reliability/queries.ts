@@ -8,7 +8,7 @@ import type { Ctx } from "@/lib/ctx";
 import { env } from "@/lib/env";
 import { FAMILIES, type Condition } from "@/lib/ledger/schema";
 import { lives } from "./lives.io";
-import { ratesFrom, standsOut, survivalFrom, triangleFrom, type ConditionLives } from "./rules";
+import { ratesFrom, standsOut, survivalFrom, monthsShown, type ConditionLives } from "./rules";
 import {
   RatesFilter,
   type LifeSums,
@@ -89,16 +89,16 @@ export async function triangle(ctx: Ctx, raw: unknown): Promise<Result<TriangleV
   if (!filter.ok) return filter;
   const asOf = today(ctx);
   const { family } = filter.value;
-  const { fromMonth, months } = triangleFrom(asOf);
+  const months = monthsShown(asOf);
   const all = sql`with ${lives(filter.value, asOf, env().MENDBAY_ZONE)}`;
   return read(ctx, async (tx) => {
     const counts = await tx.execute<CohortCount>(sql`
       ${all}
       select to_char(start_on, 'YYYY-MM') as month, ceil(days / ${DAYS_PER_MONTH}::float8)::int as ended,
         (count(*) filter (where failed))::int as failed, count(*)::int as count
-      from life where family = ${family} and start_on >= ${`${fromMonth}-01`}::date
+      from life where family = ${family} and start_on >= ${`${months[0]}-01`}::date
       group by 1, 2 order by 1, 2`);
-    const cohorts = triangleOf(counts.rows, asOf, months);
+    const cohorts = triangleOf(counts.rows, asOf, months.length);
     const odd = standsOut(cohorts);
     if (!odd) return ok({ family, asOf, cohorts, standsOut: null });
     const lots = await tx.execute<{ code: string; units: number }>(sql`

@@ -28,7 +28,7 @@ export function ratesFrom(sums: readonly LifeSums[], filter: RatesFilter, asOf: 
     (a, b) => (b.rate ?? -1) - (a.rate ?? -1) || a.label.localeCompare(b.label, "en"),
   );
   const parts = sums.filter((s) => s.family !== "system");
-  const all = rowOf("all", "All parts", null, null, parts);
+  const all = rowOf("all", { label: "All parts", name: "All parts", prose: "all parts" }, null, null, parts);
   return { asOf, filter, rows, all, firm: firmGround(rows, all), notYet: notYetFirm(rows, asOf) };
 }
 
@@ -46,10 +46,13 @@ function groupRows(sums: readonly LifeSums[], by: GroupBy): RateRow[] {
   return [...groups].map(([key, own]) => {
     const one = own[0]!;
     const split = key.includes("|");
-    const name = by === "family" ? FAMILY_WORDS[one.family] : `${one.modelName} ${one.modelCode}`;
+    const word = (text: string) => (split ? `${text}, ${one.condition}` : text);
+    const short = by === "family" ? FAMILY_WORDS[one.family] : one.modelCode;
+    const full = by === "family" ? short : `${one.modelName}, ${one.modelCode}`;
+    const bare = by === "family" ? short.toLowerCase() : short;
     return rowOf(
       key,
-      split ? `${name}, ${one.condition}` : name,
+      { label: word(short), name: word(full), prose: split ? `${one.condition} ${bare}` : bare },
       one.family,
       split ? one.condition : null,
       own,
@@ -59,7 +62,7 @@ function groupRows(sums: readonly LifeSums[], by: GroupBy): RateRow[] {
 
 function rowOf(
   key: string,
-  label: string,
+  words: Pick<RateRow, "label" | "name" | "prose">,
   family: Family | null,
   condition: Condition | null,
   own: readonly LifeSums[],
@@ -73,7 +76,7 @@ function rowOf(
   const [arrived, arrivedDead] = [sum((s) => s.arrived), sum((s) => s.arrivedDead)];
   return {
     key,
-    label,
+    ...words,
     family,
     condition,
     units: sum((s) => s.units),
@@ -151,10 +154,9 @@ export function standsOut(cohorts: readonly Cohort[]): Omit<StandsOut, "lot"> | 
   return at < 0 ? null : { month: cohorts[at]!.month, failures: failed[at]!, expected: expected[at]! };
 }
 
-/** The months that the triangle shows: the last twelve, the month of the as-of day included. */
-export function triangleFrom(asOf: Day): { fromMonth: string; months: number } {
-  const months = 12;
-  let month = asOf.slice(0, 7);
-  for (let i = 1; i < months; i++) month = addDays(`${month}-01`, -1).slice(0, 7);
-  return { fromMonth: month, months };
+/** The twelve months that the triangle shows, oldest first: the month of the as-of day is the last. */
+export function monthsShown(asOf: Day): string[] {
+  const months = [asOf.slice(0, 7)];
+  while (months.length < 12) months.unshift(addDays(`${months[0]}-01`, -1).slice(0, 7));
+  return months;
 }

@@ -47,7 +47,12 @@ export type LifeSums = {
 
 export type RateRow = {
   key: string;
+  /** Short, as it stands in the figure. */
   label: string;
+  /** With the model's name, for tables and exports. */
+  name: string;
+  /** As it stands in a sentence: "refurbished drive", "VD-8". */
+  prose: string;
   family: Family | null;
   condition: Condition | null;
   units: number;

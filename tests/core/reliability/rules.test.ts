@@ -1,5 +1,5 @@
 import { expect, test } from "vitest";
-import { ratesFrom, survivalFrom, triangleFrom } from "@/lib/reliability/rules";
+import { monthsShown, ratesFrom, survivalFrom } from "@/lib/reliability/rules";
 import { RatesFilter, type LifeSums } from "@/lib/reliability/schema";
 import { per100, percent } from "@/lib/reliability/words";
 
@@ -128,11 +128,12 @@ test("a curve ends where fewer than ten are at risk", () => {
 });
 
 test("the triangle shows twelve months up to this one", () => {
-  expect(triangleFrom("2026-11-12")).toEqual({ fromMonth: "2025-12", months: 12 });
-  expect(triangleFrom("2026-01-31").fromMonth).toBe("2025-02");
+  const shown = monthsShown("2026-11-12");
+  expect([shown.length, shown[0], shown.at(-1)]).toEqual([12, "2025-12", "2026-11"]);
+  expect(monthsShown("2026-01-31")[0]).toBe("2025-02");
 });
 
 test("figures in words never say nothing where there is something", () => {
-  expect([0.0012, 0.0751, 0.127, 1.4].map(per100)).toEqual(["0.12", "7.51", "12.7", "140"]);
+  expect([0.00001, 0.0012, 0.0751, 0.127, 1.4].map(per100)).toEqual(["<0.01", "0.12", "7.51", "12.7", "140"]);
   expect([0, 0.0004, 0.042, 0.38].map(percent)).toEqual(["0%", "under 0.1%", "4.2%", "38%"]);
 });

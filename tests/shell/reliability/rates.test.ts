@@ -156,11 +156,8 @@ test("a system's end of sale ends its parts' time, and filters choose by system 
   expect(await drives({ from: "2027-01" })).toEqual([]);
   expect((await drives({ from: "nonsense", by: "nothing" }))[0]!.units).toBe(2);
   const byModel = must(await rates(manager, { by: "model" }));
-  expect(byModel.rows.map((r) => r.label).sort()).toEqual([
-    "drive VD-8 VD-8",
-    "system OW-2210 OW-2210",
-    "system OW-4420 OW-4420",
-  ]);
+  expect(byModel.rows.map((r) => r.label).sort()).toEqual(["OW-2210", "OW-4420", "VD-8"]);
+  expect(byModel.rows.map((r) => r.name)).toContain("drive VD-8, VD-8");
   // Whole systems stand beside the parts: their time would count twice in the figure of all parts.
   expect(byModel.all.units).toBe(2);
 });
