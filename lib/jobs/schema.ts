@@ -4,6 +4,7 @@ import { z } from "zod";
 export const JOBS = {
   "mail.parse": z.object({ rawMailId: z.uuid() }),
   "mail.send": z.object({ outboxId: z.uuid() }),
+  "mail.sweep": z.object({}),
   "file.check": z.object({ fileId: z.uuid() }),
   "ledger.apply_import": z.object({ importId: z.uuid() }),
 } as const;

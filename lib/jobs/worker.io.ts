@@ -1,5 +1,5 @@
 import { fileURLToPath } from "node:url";
-import { Logger, run, runOnce, type TaskList } from "graphile-worker";
+import { Logger, parseCronItems, run, runOnce, type TaskList } from "graphile-worker";
 import { pool, closePool } from "@/db/client";
 import { jobCtx } from "@/lib/ctx";
 import { log } from "@/lib/log";
@@ -38,6 +38,12 @@ export async function startWorker(more: { concurrency?: number } = {}): Promise<
     concurrency: more.concurrency ?? 4,
     pollInterval: 1000,
     noHandleSignals: true,
+    // What a killed worker held is taken up again by this.
+    parsedCronItems: parseCronItems(
+      HANDLERS["mail.sweep"]
+        ? [{ task: "mail.sweep", match: "*/2 * * * *", options: { maxAttempts: 1 } }]
+        : [],
+    ),
     logger,
   });
   return { stop: () => runner.stop(), gone: runner.promise };

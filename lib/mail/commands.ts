@@ -407,6 +407,45 @@ export async function markFailed(
   });
 }
 
+const OVERDUE_MS = 5 * 60_000;
+
+/**
+ * Mails whose job is gone: a worker that was killed holds its jobs for hours. Jobs are put in again
+ * under the same keys, and the lease and the raw mail's state let each be done once.
+ */
+export async function sweepMail(ctx: Ctx): Promise<Result<{ parse: number; send: number }>> {
+  const may = permit(ctx, "mail.send");
+  if (!may.ok) return may;
+  return transact(ctx, async (ctx) => {
+    const before = new Date(ctx.now.getTime() - OVERDUE_MS);
+    const unread = await ctx.tx
+      .select({ id: rawMails.id })
+      .from(rawMails)
+      .where(and(eq(rawMails.state, "received"), lt(rawMails.receivedAt, before)))
+      .limit(200);
+    const unsent = await ctx.tx
+      .select({ id: outbox.id })
+      .from(outbox)
+      .where(
+        and(
+          inArray(outbox.state, ["pending", "sending"]),
+          lt(outbox.nextAt, before),
+          or(sql`${outbox.leaseUntil} is null`, lt(outbox.leaseUntil, ctx.now)),
+        ),
+      )
+      .limit(200);
+    for (const { id } of unread) await enqueue(ctx, "mail.parse", { rawMailId: id }, { key: `raw:${id}` });
+    for (const { id } of unsent) await enqueue(ctx, "mail.send", { outboxId: id }, { key: `mail:${id}` });
+    if (unread.length + unsent.length > 0)
+      await audit(ctx, {
+        act: "mail.sweep",
+        subject: ["outbox", "overdue"],
+        after: { parse: unread.length, send: unsent.length },
+      });
+    return ok({ parse: unread.length, send: unsent.length });
+  });
+}
+
 /** A person tries a dead mail again. The same Message-ID, so a double is told as one. */
 export async function retryMail(ctx: Ctx, outboxId: string): Promise<Result<undefined>> {
   const may = permit(ctx, "mail.retry");

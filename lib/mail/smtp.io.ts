@@ -38,8 +38,6 @@ function transport(): Transporter {
     auth: url.username
       ? { user: decodeURIComponent(url.username), pass: decodeURIComponent(url.password) }
       : undefined,
-    pool: true,
-    maxConnections: 4,
     connectionTimeout: 20_000,
     greetingTimeout: 20_000,
     socketTimeout: 60_000,
@@ -47,12 +45,6 @@ function transport(): Transporter {
     disableUrlAccess: true,
   });
   return kept;
-}
-
-/** Closes the connections, so that a process may stop. */
-export function closeSmtp(): void {
-  kept?.close();
-  kept = undefined;
 }
 
 const LINE_END = /[\r\n]/;

@@ -10,6 +10,7 @@ export type Handler<N extends JobName> = (ctx: Ctx, payload: JobPayload<N>) => P
 export const HANDLERS: { [N in JobName]?: () => Promise<{ handle: Handler<N> }> } = {
   "mail.parse": () => import("./parseMail"),
   "mail.send": () => import("./sendMail"),
+  "mail.sweep": () => import("./sweepMail"),
   "file.check": () => import("./checkFile"),
   "ledger.apply_import": () => import("./applyImport"),
 };

@@ -10,7 +10,7 @@ import { terms, termsVersions } from "@/db/schema/coverage";
 import { serialKey, serialLoose } from "@/lib/base/serial";
 import { runDueJobs } from "@/lib/jobs/worker.io";
 import { startReceiver, type Receiver } from "@/lib/mail/receiver.io";
-import { closeSmtp } from "@/lib/mail/smtp.io";
+import { stopReader } from "@/lib/mail/parser.io";
 import { startMailHost, type MailHost } from "@/lib/standins/mailhost";
 import { takePort } from "@/lib/standins/ports";
 import { createUploadHost, uploadToken } from "@/lib/standins/uploadhost";
@@ -78,7 +78,7 @@ export async function mailWorld() {
     },
     async stop() {
       post.close();
-      closeSmtp();
+      stopReader();
       await receiver.stop();
       await host.stop();
       uploads.closeAllConnections();
