@@ -49,6 +49,8 @@ export async function fileMail(
       return ok<Filed>({ messageRowId: before?.id ?? null, ticketId: before?.ticketId ?? null, to: "again" });
     }
     const sender = (input.read.ok ? input.read.mail : input.read.head)?.from[0]?.email ?? raw.envelopeFrom;
+    // One sender's mails are filed one after another: a reply and what it answers may come at once.
+    await ctx.tx.execute(sql`select pg_advisory_xact_lock(hashtext(${`mail from ${sender.toLowerCase()}`}))`);
     const contact = await contactByEmail(ctx, sender);
     const arrival = await readArrival(ctx, raw, input.read, contact !== null);
     const { filing, message } = arrival;

@@ -345,3 +345,74 @@ test("dots are given back as they were (RFC 5321 s. 4.5.2), and the bytes are ke
   );
   expect(kept!.bytes.toString("latin1").trimEnd()).toBe(raw.toString("latin1").trimEnd());
 });
+
+test("a connection that breaks inside a mail leaves nothing, and the receiver goes on", async () => {
+  const count = async () => (await rows<{ n: number }>(sql`select count(*)::int as n from raw_mail`))[0]!.n;
+  const before = await count();
+  const broken = new Promise<void>((done, fail) => {
+    const socket = connect(world.receiver.port, "127.0.0.1");
+    const say = ["EHLO x.example", "MAIL FROM:<a@x.example>", "RCPT TO:<desk@ostwick.example>", "DATA"];
+    socket.setEncoding("utf8");
+    socket.on("data", (chunk: string) => {
+      if (chunk.startsWith("354")) return socket.write("Subject: half\r\n\r\nand th", () => socket.destroy());
+      const next = /^\d{3} /m.test(chunk) ? say.shift() : undefined;
+      if (next) socket.write(`${next}\r\n`);
+    });
+    socket.on("close", () => done());
+    socket.on("error", fail);
+  });
+  await broken;
+  expect(await world.arrive(rawMailOf({ subject: "After the break" }), { later: true })).toContain("stored");
+  expect(await count()).toBe(before + 1);
+});
+
+test.each([
+  ["in order", [0, 1, 2]],
+  ["the last first", [2, 0, 1]],
+  ["backwards", [2, 1, 0]],
+  ["the middle first", [1, 2, 0]],
+])("three mails of one conversation are one ticket, acknowledged once: %s", async (name, order) => {
+  const from = `${name.replaceAll(" ", "")}@somewhere.example`;
+  const [a, b, c] = [someId(), someId(), someId()];
+  const mails = [
+    rawMailOf({ from, messageId: a, subject: "Node down" }),
+    rawMailOf({ from, messageId: b, headers: [`In-Reply-To: ${a}`, `References: ${a}`], text: "More." }),
+    rawMailOf({
+      from,
+      messageId: c,
+      headers: [`In-Reply-To: ${b}`, `References: ${a} ${b}`],
+      text: "And more.",
+    }),
+  ];
+  for (const n of order) await world.arrive(mails[n]!, { from });
+  expect(
+    await rows(
+      sql`select count(distinct ticket_id)::int as n, count(*)::int as mails from message where from_email = ${from}`,
+    ),
+  ).toEqual([{ n: 1, mails: 3 }]);
+  expect(await world.sent(from)).toHaveLength(1);
+});
+
+test("many mails of one sender at once: each filed once, in the record of its conversation", async () => {
+  const from = "burst@somewhere.example";
+  const root = someId();
+  await Promise.all(
+    Array.from({ length: 8 }, (_, i) =>
+      world.arrive(
+        rawMailOf({
+          from,
+          text: `No. ${i}`,
+          messageId: i === 0 ? root : someId(),
+          headers: i === 0 ? [] : [`References: ${root}`],
+        }),
+        { from, later: true },
+      ),
+    ),
+  );
+  await Promise.all([world.jobs(), world.jobs()]);
+  const [found] = await rows<{ mails: number; entries: number }>(
+    sql`select count(*)::int as mails, (select count(*)::int from entry e join ticket t on t.id = e.ticket_id where t.person_email = ${from} and e.kind = 'mail_in') as entries from message where from_email = ${from}`,
+  );
+  expect(found).toEqual({ mails: 8, entries: 8 });
+  expect((await world.sent(from)).length).toBeLessThanOrEqual(3);
+});
