@@ -151,7 +151,8 @@ export async function readArrival(ctx: Ctx, raw: RawMail, read: ReadMail, known:
       fromName: from[0]?.name ?? "",
       toEmails: mail?.to ?? raw.envelopeTo,
       subject: mail?.subject ?? "",
-      sentAt: mail?.sentAt ?? raw.receivedAt,
+      // A date from the future would make it the newest of its ticket for ever.
+      sentAt: mail?.sentAt && mail.sentAt < raw.receivedAt ? mail.sentAt : raw.receivedAt,
       text,
       html: mail?.html ?? null,
       folds,

@@ -95,7 +95,10 @@ export function fileWhere(f: FilingFacts): Filing {
   if (found?.closedAt && f.now.getTime() - found.closedAt.getTime() > TOKEN_DAYS * DAY) {
     say("age", `ticket ${found.number} has been closed for more than ${TOKEN_DAYS} days`);
     if (f.kind !== "auto_reply") return done("new", { hintTicketId: found.ticketId });
-    return done("park");
+    return done("hold", {
+      hintTicketId: found.ticketId,
+      why: "An automatic mail about a ticket that was closed long ago.",
+    });
   }
 
   if (f.kind === "auto_reply") {

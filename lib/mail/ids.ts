@@ -6,7 +6,9 @@ const ID = /<([^<>\s@]+@[^<>\s@]+)>/g;
 
 /** Valid ids of a header value, in order, with brackets, without repeats. */
 export function idsIn(value: string): string[] {
-  return [...new Set([...value.matchAll(ID)].map((m) => `<${m[1]}>`))];
+  const found = [...value.matchAll(ID)].map((m) => `<${m[1]}>`);
+  // A header line has 998 octets (RFC 5322 s. 2.1.1); what is longer is no id, and fits no index.
+  return [...new Set(found.filter((id) => id.length <= 900))];
 }
 
 export type HeaderLine = { key: string; line: string };

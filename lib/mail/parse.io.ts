@@ -81,7 +81,7 @@ const addresses = (field: AddressObject | AddressObject[] | undefined) =>
 
 /** One form of an address for comparing: NFC, lower case; an international domain in its ASCII form. */
 export function addressKey(address: string): string {
-  const trimmed = address.normalize("NFC").trim().toLowerCase();
+  const trimmed = plainText(address).normalize("NFC").trim().toLowerCase().slice(0, 320);
   const at = trimmed.lastIndexOf("@");
   if (at < 1) return trimmed;
   const domain = trimmed.slice(at + 1);
@@ -101,7 +101,10 @@ export async function parseMail(raw: Buffer): Promise<ParsedMail> {
     skipImageLinks: true,
     maxHtmlLengthToParse: 2_000_000,
   });
-  const headers: HeaderLine[] = mail.headerLines.map((h) => ({ key: h.key, line: h.line }));
+  const headers: HeaderLine[] = mail.headerLines.map((h) => ({
+    key: h.key,
+    line: h.line.replace(/\u0000/g, ""),
+  }));
   const type = contentTypeOf(headers);
   const report = type.type === "multipart/report" ? partsOf(bytes.toString("latin1"), type.boundary) : [];
   const partOf = (...types: string[]) =>
@@ -143,7 +146,7 @@ export async function parseMail(raw: Buffer): Promise<ParsedMail> {
     html: encrypted ? null : html,
     attachments: (encrypted ? [] : files).slice(0, MAX_FILES).map((a, i) => ({
       name: attachmentName(a.filename, a.contentType, i + 1),
-      type: a.contentType,
+      type: plainText(a.contentType).slice(0, 120),
       size: a.content.length,
       inline: a.related === true,
       content: new Uint8Array(a.content),

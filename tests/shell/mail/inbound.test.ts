@@ -1,5 +1,6 @@
 import { connect } from "node:net";
 import { sql } from "drizzle-orm";
+import fc from "fast-check";
 import sharp from "sharp";
 import { afterAll, beforeAll, expect, test } from "vitest";
 import { jobCtx, type Ctx } from "@/lib/ctx";
@@ -415,4 +416,31 @@ test("many mails of one sender at once: each filed once, in the record of its co
   );
   expect(found).toEqual({ mails: 8, entries: 8 });
   expect((await world.sent(from)).length).toBeLessThanOrEqual(3);
+});
+
+test("whatever bytes arrive, each mail ends filed, held, parked or unreadable", async () => {
+  const noise = fc.uint8Array({ minLength: 1, maxLength: 12 });
+  const whole = rawMailOf({
+    text: "The node is down.",
+    files: [{ name: "a.log", type: "text/plain", bytes: Buffer.from("x") }],
+  });
+  const wild = fc.tuple(
+    fc.array(fc.tuple(fc.nat(whole.length), noise), { minLength: 1, maxLength: 6 }),
+    fc.boolean(),
+  );
+  const samples = fc.sample(wild, { numRuns: 60, seed: 20260304 }).map(([cuts, long]) => {
+    const bytes = Buffer.from(whole);
+    for (const [at, put] of cuts) Buffer.from(put).copy(bytes, Math.min(at, bytes.length - 1));
+    const id = long ? `Message-ID: <${"x".repeat(5000)}@x.example>\r\nX-Nul: \0\r\n` : "";
+    return Buffer.concat([Buffer.from(id), bytes]);
+  });
+  for (const raw of samples) await world.arrive(raw, { later: true, from: `wild@somewhere.example` });
+  await world.jobs();
+  expect(
+    await rows(sql`select state, count(*)::int from raw_mail where state = 'received' group by state`),
+  ).toEqual([]);
+  expect(
+    await rows(sql`select m.id from message m where m.direction = 'in' and m.ticket_id is null and m.kind <> 'bounce'
+      and not exists (select from held_mail h where h.message_id = m.id)`),
+  ).toEqual([]);
 });
