@@ -134,8 +134,8 @@ CREATE POLICY own_account ON account FOR SELECT TO mendbay_portal USING (id = me
 -- A unit is seen by the account that holds its open sale, or that of the system it stands in.
 CREATE FUNCTION mendbay_holds(of_unit uuid) RETURNS boolean LANGUAGE sql STABLE SECURITY DEFINER SET search_path = public AS $$
   SELECT EXISTS (SELECT FROM sale_line s WHERE s.unit_id = of_unit AND s.account_id = mendbay_account())
-    OR EXISTS (SELECT FROM installation i JOIN sale_line s ON s.unit_id = i.parent_unit_id AND s.account_id = mendbay_account()
-      WHERE i.unit_id = of_unit AND i.from_on >= s.shipped_on AND (s.ended_on IS NULL OR i.from_on <= s.ended_on))
+    OR EXISTS (SELECT FROM installation i JOIN sale_line s ON s.id = i.sale_line_id
+      WHERE i.unit_id = of_unit AND s.account_id = mendbay_account())
 $$;
 --> statement-breakpoint
 ALTER TABLE unit ENABLE ROW LEVEL SECURITY;
@@ -149,8 +149,7 @@ ALTER TABLE installation ENABLE ROW LEVEL SECURITY;
 CREATE POLICY staff_all ON installation TO mendbay_staff USING (true) WITH CHECK (true);
 --> statement-breakpoint
 CREATE POLICY held_units ON installation FOR SELECT TO mendbay_portal USING (EXISTS (
-  SELECT FROM sale_line s WHERE s.unit_id = installation.parent_unit_id AND s.account_id = mendbay_account()
-    AND installation.from_on >= s.shipped_on AND (s.ended_on IS NULL OR installation.from_on <= s.ended_on)));
+  SELECT FROM sale_line s WHERE s.id = installation.sale_line_id AND s.account_id = mendbay_account()));
 --> statement-breakpoint
 ALTER TABLE cover_pause ENABLE ROW LEVEL SECURITY;
 --> statement-breakpoint

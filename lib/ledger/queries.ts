@@ -31,7 +31,8 @@ function hits(tx: Tx, where: ReturnType<typeof and>, limit: number) {
       whereabouts: units.whereabouts,
       place: units.place,
       slot: installations.slot,
-      systemUnitId: installations.parentUnitId,
+      // The system sold, however deep the part stands in it.
+      systemUnitId: sql<string | null>`parent_sale.unit_id`,
       systemSerial: sql<string | null>`${parentUnit}.serial`,
       accountId: sql<string | null>`coalesce(own_sale.account_id, parent_sale.account_id)`,
       orderNumber: sql<string | null>`coalesce(own_sale.order_number, parent_sale.order_number)`,
@@ -40,12 +41,9 @@ function hits(tx: Tx, where: ReturnType<typeof and>, limit: number) {
     .from(units)
     .innerJoin(models, eq(models.id, units.modelId))
     .leftJoin(installations, and(eq(installations.unitId, units.id), isNull(installations.toOn)))
-    .leftJoin(sql`unit as parent_unit`, sql`parent_unit.id = ${installations.parentUnitId}`)
     .leftJoin(sql`sale_line as own_sale`, sql`own_sale.unit_id = ${units.id} and own_sale.ended_on is null`)
-    .leftJoin(
-      sql`sale_line as parent_sale`,
-      sql`parent_sale.unit_id = ${installations.parentUnitId} and parent_sale.ended_on is null`,
-    )
+    .leftJoin(sql`sale_line as parent_sale`, sql`parent_sale.id = ${installations.saleLineId}`)
+    .leftJoin(sql`unit as parent_unit`, sql`parent_unit.id = parent_sale.unit_id`)
     .leftJoin(accounts, sql`${accounts.id} = coalesce(own_sale.account_id, parent_sale.account_id)`)
     .where(where)
     .orderBy(asc(units.serial))

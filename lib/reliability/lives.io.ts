@@ -67,10 +67,9 @@ export function lives(filter: RatesFilter, asOf: Day, zone: string): SQL {
       join model m on m.id = u.model_id
       join unit ru on ru.id = l.root_id
       join model root on root.id = ru.model_id
-      join cover_window w on w.kind = 'cover' and w.sale_line_id = l.sale_line_id
-        and (w.installation_id = l.id or (w.installation_id is null and l.sold_as is not null))
-      left join cover_window doa on doa.kind = 'doa' and doa.sale_line_id = l.sale_line_id
-        and (doa.installation_id = l.id or (doa.installation_id is null and l.sold_as is not null))
+      -- A window is of an installation, or of the sold unit itself: either way of the life with that id.
+      join cover_window w on w.kind = 'cover' and coalesce(w.installation_id, w.sale_line_id) = l.id
+      left join cover_window doa on doa.kind = 'doa' and coalesce(doa.installation_id, doa.sale_line_id) = l.id
       left join found f on f.life_id = l.id
       where l.start_on <= ${asOf}::date and ${sql.join(within, sql` and `)}
     ),

@@ -1,5 +1,5 @@
 import { sql } from "drizzle-orm";
-import { read } from "@/db/client";
+import { read, type Tx } from "@/db/client";
 import { permit } from "@/lib/auth/rules";
 import { civilDayIn } from "@/lib/base/civil";
 import { parse } from "@/lib/base/parse";
@@ -27,12 +27,23 @@ function asked(ctx: Ctx, raw: unknown): Result<RatesFilter> {
   return may.ok ? parse(RatesFilter, raw) : may;
 }
 
+/**
+ * Reads lives. They pass through every part ever sold: compiling such a query costs more than it saves,
+ * and sorting on disk the same. Both settings end with the transaction.
+ */
+function readLives<T>(ctx: Ctx, run: (tx: Tx) => Promise<T>): Promise<T> {
+  return read(ctx, async (tx) => {
+    await tx.execute(sql`select set_config('jit', 'off', true), set_config('work_mem', '64MB', true)`);
+    return run(tx);
+  });
+}
+
 /** Failures over exposure, by part family or by model, as of today. */
 export async function rates(ctx: Ctx, raw: unknown): Promise<Result<RatesView>> {
   const filter = asked(ctx, raw);
   if (!filter.ok) return filter;
   const asOf = today(ctx);
-  const sums = await read(ctx, async (tx) => {
+  const sums = await readLives(ctx, async (tx) => {
     const found = await tx.execute<LifeSums>(sql`
       with ${lives(filter.value, asOf, env().MENDBAY_ZONE)}
       select family, model_code as "modelCode", model_name as "modelName", condition,
@@ -56,7 +67,7 @@ export async function survival(ctx: Ctx, raw: unknown): Promise<Result<SurvivalV
   const filter = asked(ctx, raw);
   if (!filter.ok) return filter;
   const asOf = today(ctx);
-  const rows = await read(ctx, async (tx) => {
+  const rows = await readLives(ctx, async (tx) => {
     const found = await tx.execute<{
       condition: Condition;
       time: number;
@@ -91,7 +102,7 @@ export async function triangle(ctx: Ctx, raw: unknown): Promise<Result<TriangleV
   const { family } = filter.value;
   const months = monthsShown(asOf);
   const all = sql`with ${lives(filter.value, asOf, env().MENDBAY_ZONE)}`;
-  return read(ctx, async (tx) => {
+  return readLives(ctx, async (tx) => {
     const counts = await tx.execute<CohortCount>(sql`
       ${all}
       select to_char(start_on, 'YYYY-MM') as month, ceil(days / ${DAYS_PER_MONTH}::float8)::int as ended,

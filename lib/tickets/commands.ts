@@ -2,7 +2,7 @@ import { and, eq, isNull, sql } from "drizzle-orm";
 import { z } from "zod";
 import { transact } from "@/db/client";
 import { evidence } from "@/db/schema/evidence";
-import { contacts, installations, units } from "@/db/schema/ledger";
+import { contacts, installations, saleLines, units } from "@/db/schema/ledger";
 import { messages } from "@/db/schema/mail";
 import { rmaLines, rmas } from "@/db/schema/rma";
 import { entries, ticketParticipants, tickets, ticketUnits } from "@/db/schema/tickets";
@@ -168,8 +168,9 @@ export async function addTicketUnit(
     const ticket = await ticketOf(ctx, v.ticketId);
     if (!ticket) return refuse("not_found", "This ticket is not there.");
     const [place] = await ctx.tx
-      .select({ systemUnitId: installations.parentUnitId, slot: installations.slot })
+      .select({ systemUnitId: saleLines.unitId, slot: installations.slot })
       .from(installations)
+      .leftJoin(saleLines, eq(saleLines.id, installations.saleLineId))
       .where(and(eq(installations.unitId, v.unitId), isNull(installations.toOn)))
       .limit(1);
     const id = ctx.newId();
