@@ -20,7 +20,7 @@ export function FigureOne({ view }: { view: RatesView }) {
   const systems = view.rows.some((r) => r.family === "system");
   return (
     <>
-      <figure>
+      <figure tabIndex={0} aria-label="Figure 1">
         <RateFigure view={view} by={by} />
         <figcaption>
           <b>Figure 1.</b> Failure rate by {by}, as of {showDay(view.asOf)}. Dots are confirmed failures over
@@ -69,7 +69,7 @@ export function FigureTwo({ view, filter }: { view: SurvivalView; filter: RatesF
   const cut = view.groups.some((g) => g.steps.length > 0);
   return (
     <>
-      <figure>
+      <figure tabIndex={0} aria-label="Figure 2">
         <SurvivalFigure view={view} />
         <figcaption>
           <b>Figure 2.</b> {what}: share still working by months in service, as of {showDay(view.asOf)}{" "}
@@ -103,7 +103,7 @@ export function FigureThree({ view, filter }: { view: TriangleView; filter: Rate
   const small = view.cohorts.some((c) => c.units < SMALL_COHORT);
   return (
     <>
-      <figure>
+      <figure tabIndex={0} aria-label="Figure 3">
         <TriangleFigure view={view} months={months} />
         <figcaption>
           <b>Figure 3.</b> {what}: failures per 1000 at risk, by ship month and month in service, as of{" "}
