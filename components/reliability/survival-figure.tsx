@@ -13,10 +13,11 @@ export function SurvivalFigure({ view }: { view: SurvivalView }) {
   const share = shareAxis(least);
   const x = (days: number) => LEFT + (days / DAYS_PER_MONTH / months.to) * (RIGHT - LEFT);
   const y = (s: number) => FOOT - ((Math.max(s, share.from) - share.from) / (1 - share.from)) * (FOOT - TOP);
-  const ends = apart(
-    groups.map((g) => y(g.steps.at(-1)?.survival ?? 1) + 4),
-    15,
-  );
+  // A curve is named where it ends; one that ends early keeps its name with it, inside the figure.
+  const early = groups.map((g) => x(g.shownTo) < LEFT + (RIGHT - LEFT) * 0.7);
+  const heights = groups.map((g) => y(g.steps.at(-1)?.survival ?? 1) + 4);
+  // Names side by side need no room between them; those above each other do.
+  const ends = early.every((e) => e === early[0]) ? apart(heights, 15) : heights;
   const fresh = groups.find((g) => g.condition === "new");
   const coverAt =
     fresh?.coverDays && fresh.coverDays / DAYS_PER_MONTH < months.to ? x(fresh.coverDays) : null;
@@ -58,9 +59,16 @@ export function SurvivalFigure({ view }: { view: SurvivalView }) {
       {groups.map((g, i) => (
         <text
           key={g.condition}
-          x={RIGHT + 8}
+          x={early[i] ? x(g.shownTo) + 8 : RIGHT + 8}
           y={ends[i]}
-          style={{ fontWeight: 650, fill: i > 0 ? "var(--mask)" : undefined }}
+          style={{
+            fontWeight: 650,
+            fill: i > 0 ? "var(--mask)" : undefined,
+            // Over a band the name keeps a rim of paper, so that no line runs through its letters.
+            paintOrder: "stroke",
+            stroke: "var(--paper)",
+            strokeWidth: early[i] ? 4 : 0,
+          }}
         >
           {g.condition}
         </text>
