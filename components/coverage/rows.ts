@@ -11,7 +11,12 @@ const byNumber = new Intl.Collator("en", { numeric: true });
 function partLabel(slot: string | null, family: string): string {
   const word = familyWord(family);
   if (!slot) return word;
-  return slot.toLowerCase().includes(word.toLowerCase()) ? slot : `${word}, ${slot}`;
+  // "Supply 1" says power supply well enough; "Socket 1" does not say processor.
+  const named = word
+    .toLowerCase()
+    .split(/[ ,]+/)
+    .some((w) => slot.toLowerCase().includes(w));
+  return named ? slot : `${word}, ${slot}`;
 }
 
 /**
@@ -21,7 +26,9 @@ function partLabel(slot: string | null, family: string): string {
 export function rulerRows(view: CoverView): RulerRow[] {
   const groups = new Map<string, CoverRow[]>();
   for (const row of view.rows) {
-    const key = [row.clauseNumber, row.kind, row.firstOn, row.lastOn, row.state, row.claimed].join("|");
+    // The first days are one window for all that was shipped: the claimed part shares their row.
+    const own = row.kind === "cover" && row.claimed;
+    const key = [row.clauseNumber, row.kind, row.firstOn, row.lastOn, row.state, own].join("|");
     groups.set(key, [...(groups.get(key) ?? []), row]);
   }
   const clauses = new Map<string, number>();
@@ -48,7 +55,7 @@ export function rulerRows(view: CoverView): RulerRow[] {
           from: first.firstOn,
           to: first.lastOn,
           words: first.words,
-          claimed: first.claimed,
+          claimed: rows.some((r) => r.claimed),
         },
       ];
     })

@@ -39,6 +39,8 @@ export type UploaderProps = {
   hint: string;
   accept?: string;
   multiple?: boolean;
+  /** A plain button, for places that say themselves what is wanted. */
+  compact?: boolean;
   /** Told after each file that has arrived. */
   onDone?: () => void;
 };
@@ -58,7 +60,16 @@ function plain(message: string): string {
  * Files to the upload host: several at once, each with its share, a pause that keeps what was sent,
  * and a way to stop. Goes on in the background while the page is read.
  */
-export function Uploader({ endpoint, input, label, hint, accept, multiple = true, onDone }: UploaderProps) {
+export function Uploader({
+  endpoint,
+  input,
+  label,
+  hint,
+  accept,
+  multiple = true,
+  compact = false,
+  onDone,
+}: UploaderProps) {
   const [items, setItems] = useState<Item[]>([]);
   const field = useRef<HTMLInputElement>(null);
   const fieldId = useId();
@@ -143,15 +154,17 @@ export function Uploader({ endpoint, input, label, hint, accept, multiple = true
   };
 
   return (
-    <div className="uploader">
-      <label className="addbox notch" htmlFor={fieldId}>
-        <svg viewBox="0 0 40 32" aria-hidden="true">
-          <path d="M2 8h9l3-5h12l3 5h9v21H2z" />
-          <circle cx="20" cy="18" r="6.5" />
-        </svg>
+    <div className={compact ? "uploader compact" : "uploader"}>
+      <label className={compact ? "btn line notch" : "addbox notch"} htmlFor={fieldId}>
+        {compact ? null : (
+          <svg viewBox="0 0 40 32" aria-hidden="true">
+            <path d="M2 8h9l3-5h12l3 5h9v21H2z" />
+            <circle cx="20" cy="18" r="6.5" />
+          </svg>
+        )}
         <span>
           {label}
-          <small>{hint}</small>
+          {compact ? null : <small>{hint}</small>}
         </span>
         <input
           ref={field}

@@ -1,3 +1,4 @@
+import { baseSubject } from "@/lib/mail/ids";
 import { eq, sql } from "drizzle-orm";
 import type { z } from "zod";
 import { transact } from "@/db/client";
@@ -122,8 +123,13 @@ export async function fileMail(
   });
 }
 
-const faultWords = (subject: string, words: string) =>
-  (words.split("\n").find((l) => l.trim().length > 12) ?? (words.trim() || subject)).trim().slice(0, 400);
+/** A subject that says something is the customer's own summary; else the first line that is no greeting. */
+function faultWords(subject: string, words: string): string {
+  const said = baseSubject(subject);
+  if (said.length >= 10 && /\s/.test(said)) return said.slice(0, 400);
+  const line = words.split("\n").find((l) => l.trim().length > 16);
+  return (line ?? (words.trim() || subject)).trim().slice(0, 400);
+}
 
 /**
  * Serials that the text names are proposed, and a person ties one. To a customer only their own

@@ -164,26 +164,32 @@ export async function ticketByNumber(ctx: Ctx, number: number): Promise<TicketVi
       .orderBy(asc(entries.seq))
       .limit(ENTRY_LIMIT);
     const customer = ctx.actor.kind === "customer";
-    const messageRows = await tx
-      .select({
-        id: messages.id,
-        direction: messages.direction,
-        kind: messages.kind,
-        fromEmail: messages.fromEmail,
-        fromName: messages.fromName,
-        toEmails: messages.toEmails,
-        subject: messages.subject,
-        sentAt: messages.sentAt,
-        text: messages.text,
-        html: sql<boolean>`${messages.html} is not null`,
-        folds: messages.folds,
-        proof: messages.proof,
-        ...(customer ? {} : { outboxState: outbox.state, outboxError: outbox.lastError }),
-      })
-      .from(messages)
-      .leftJoin(outbox, customer ? sql`false` : eq(outbox.messageRowId, messages.id))
-      .where(eq(messages.ticketId, id))
-      .limit(ENTRY_LIMIT);
+    const messageColumns = {
+      id: messages.id,
+      direction: messages.direction,
+      kind: messages.kind,
+      fromEmail: messages.fromEmail,
+      fromName: messages.fromName,
+      toEmails: messages.toEmails,
+      subject: messages.subject,
+      sentAt: messages.sentAt,
+      text: messages.text,
+      html: sql<boolean>`${messages.html} is not null`,
+      folds: messages.folds,
+      proof: messages.proof,
+    };
+    // Customers put mails into the outbox and read none of it: their role has no right to.
+    const messageRows =
+      ctx.actor.kind === "customer"
+        ? (
+            await tx.select(messageColumns).from(messages).where(eq(messages.ticketId, id)).limit(ENTRY_LIMIT)
+          ).map((m) => ({ ...m, outboxState: null, outboxError: null }))
+        : await tx
+            .select({ ...messageColumns, outboxState: outbox.state, outboxError: outbox.lastError })
+            .from(messages)
+            .leftJoin(outbox, eq(outbox.messageRowId, messages.id))
+            .where(eq(messages.ticketId, id))
+            .limit(ENTRY_LIMIT);
     const { ticket } = t;
     return {
       id,
@@ -217,27 +223,7 @@ export async function ticketByNumber(ctx: Ctx, number: number): Promise<TicketVi
         line: e.line,
         data: e.data,
       })),
-      messages: Object.fromEntries(
-        messageRows.map((m) => [
-          m.id,
-          {
-            id: m.id,
-            direction: m.direction,
-            kind: m.kind,
-            fromEmail: m.fromEmail,
-            fromName: m.fromName,
-            toEmails: m.toEmails,
-            subject: m.subject,
-            sentAt: m.sentAt,
-            text: m.text,
-            hasHtml: m.html,
-            folds: m.folds,
-            proof: m.proof,
-            outboxState: "outboxState" in m ? ((m.outboxState as MessageView["outboxState"]) ?? null) : null,
-            outboxError: "outboxError" in m ? ((m.outboxError as string | null) ?? null) : null,
-          },
-        ]),
-      ),
+      messages: Object.fromEntries(messageRows.map(({ html, ...m }) => [m.id, { ...m, hasHtml: html }])),
     };
   });
 }

@@ -44,7 +44,7 @@ export function clockView(
   return {
     state: "running",
     share: Math.min(1, left / total),
-    words: left >= 16 * 60 ? `${showNear(dueDay, today)}` : `${showClockSpan(left)} left`,
+    words: left >= 10 * 60 ? `${showNear(dueDay, today)}` : `${showClockSpan(left)} left`,
     late: false,
     by,
   };

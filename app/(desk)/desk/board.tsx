@@ -202,7 +202,10 @@ function Row({
       className={on ? "q-row on" : "q-row"}
       id={`row-${row.id}`}
       onClick={choose}
-      onFocus={choose}
+      // By keyboard only: a row that opened under the mouse would move its link away before the click ends.
+      onFocus={(e) => {
+        if (e.target.matches(":focus-visible")) choose();
+      }}
       aria-current={on ? "true" : undefined}
     >
       {on ? <Pin size={13} /> : null}

@@ -388,9 +388,10 @@ export function Station({ expected, aside }: { expected: Expected[]; aside: Asid
                     detail={needed.includes(slot) ? "needed" : "if there is any"}
                   >
                     <Uploader
+                      compact
                       endpoint="photo"
                       input={{ subject: "receipt_line", subjectId: line.id, slot }}
-                      label={`Photo: ${PHOTO_SLOT_WORDS[slot].toLowerCase()}`}
+                      label="Take the photo"
                       hint="Camera or file"
                       accept="image/*"
                       multiple={false}

@@ -130,6 +130,7 @@ function StepForm({
       </div>
       {step.photo ? (
         <Uploader
+          compact
           endpoint="photo"
           input={{ subject: "bench_test", subjectId: testId, slot: "finding" }}
           label="Photo of the finding"

@@ -41,7 +41,9 @@ export default async function Ticket({
   const site = await defaultSite(ctx);
   const today = civilDayIn(ctx.now, site.zone);
   const tied = t.units.filter((u) => u.state === "tied");
-  const proposed = t.units.filter((u) => u.state === "proposed");
+  // A system whose part is tied needs no question of its own.
+  const answered = new Set(tied.flatMap((u) => [u.unitId, u.systemUnitId]));
+  const proposed = t.units.filter((u) => u.state === "proposed" && !answered.has(u.unitId));
   const main = tied[0] ?? proposed[0];
   const view = main ? await coverFor(ctx, main.unitId, today) : null;
   const [evidence, decisions, rmas] = [
@@ -119,16 +121,13 @@ export default async function Ticket({
               </span>
             ) : null}
           </div>
-          {mayAct
-            ? proposed.map((u) => (
-                <UnitPlate
-                  key={u.id}
-                  ticketId={t.id}
-                  number={t.number}
-                  unit={{ unitId: u.unitId, serial: u.serial, modelName: u.modelName }}
-                />
-              ))
-            : null}
+          {mayAct && proposed.length > 0 ? (
+            <UnitPlate
+              ticketId={t.id}
+              number={t.number}
+              units={proposed.map((u) => ({ unitId: u.unitId, serial: u.serial, modelName: u.modelName }))}
+            />
+          ) : null}
           <Record
             entries={t.entries}
             messages={t.messages}
