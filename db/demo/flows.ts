@@ -168,11 +168,12 @@ export async function byMail(
   subject: string,
   text: string,
   photo: Buffer | null,
+  to = "desk@ostwick.example",
 ): Promise<string | null> {
   const boundary = `b${s.seed.code(12)}`;
   const head = [
     `From: ${from.name} <${from.email}>`,
-    "To: Warranty desk <desk@ostwick.example>",
+    `To: Warranty desk <${to}>`,
     `Subject: ${subject}`,
     `Date: ${s.at.toUTCString()}`,
     `Message-ID: <${s.seed.uuid()}@${from.email.split("@")[1]}>`,
@@ -201,7 +202,7 @@ export async function byMail(
   const kept = must(
     await storeRaw(s.job, {
       envelopeFrom: from.email,
-      envelopeTo: ["desk@ostwick.example"],
+      envelopeTo: [to],
       remoteAddress: "127.0.0.1",
       bytes,
     }),

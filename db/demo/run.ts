@@ -7,6 +7,7 @@ import { publishTerms } from "@/lib/coverage/commands";
 import type { Actor, Ctx } from "@/lib/ctx";
 import { handle as applyImport } from "@/lib/jobs/handlers/applyImport";
 import { addStock, keepSite, moveUnit, previewImport, startImport } from "@/lib/ledger/commands";
+import { replyAddress } from "@/lib/mail/token.io";
 import { authorizeRma } from "@/lib/rma/commands";
 import {
   answer,
@@ -467,16 +468,22 @@ for (const hours of [90, 120, 140, 190])
   await underWay(hours, 2, seed.pick(["drive", "memory", "power_supply"]));
 for (const hours of [150, 200]) await underWay(hours, 4, "drive");
 // A mail that may not be joined without a person's look.
+// Its address was signed for somebody else: a forwarded mail, perhaps, or somebody who wants the parcel.
 for (const n of [1, 2]) {
-  const some = await rawDb().execute<{ number: number }>(
-    sql`select number from ticket where closed_at is null order by number limit 1 offset ${n * 3}`,
+  const some = await rawDb().execute<{ number: number; email: string }>(
+    sql`select number, person_email as email from ticket where closed_at is null and account_id is not null order by number limit 1 offset ${n * 3}`,
   );
+  const about = some.rows[0];
+  if (!about) continue;
   await byMail(
     recent(n * 4),
     { name: "Pat Orrin", email: "pat@pinnock-billing.example" },
-    `Re: your server order, ticket ${some.rows[0]?.number ?? 3001}`,
-    "Please send the replacement to our new address in the port instead.\n\nPat Orrin",
+    n === 1 ? "Re: your server order" : "New address for the replacement",
+    n === 1
+      ? "Please tell me when the part was shipped, I keep the books for them now.\n\nPat Orrin"
+      : "Please send the replacement to our new address in the port instead.\n\nPat Orrin",
     null,
+    replyAddress(about.number, about.email),
   );
 }
 
