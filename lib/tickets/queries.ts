@@ -163,7 +163,6 @@ export async function ticketByNumber(ctx: Ctx, number: number): Promise<TicketVi
       .where(eq(entries.ticketId, id))
       .orderBy(asc(entries.seq))
       .limit(ENTRY_LIMIT);
-    const customer = ctx.actor.kind === "customer";
     const messageColumns = {
       id: messages.id,
       direction: messages.direction,
