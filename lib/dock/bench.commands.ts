@@ -26,6 +26,9 @@ import { sheetFor, verdictOf } from "./sheets";
 
 const same = (a: string, b: string) => serialKey(a) === serialKey(b);
 
+/** A wrong serial at the bench: the sentence stands above the field that was scanned into. */
+const stopAt = (words: string) => refuse("rule", words, { fields: { scan: [words] } });
+
 /** Scans a unit in at the bench and opens its test, by the newest checklist of its family. */
 export async function startBench(
   ctx: Ctx,
@@ -42,9 +45,9 @@ export async function startBench(
     if (line.lineState !== "received")
       return refuse("rule", "Only a unit that the dock has taken in can be tested.");
     if (!same(input.value.scan, line.serial))
-      return refuse("rule", `Stop: ${input.value.scan} was scanned, and ${line.serial} is to be tested.`, {
-        fields: { scan: [`Scan ${line.serial}.`] },
-      });
+      return stopAt(
+        `Stop: ${input.value.scan} was scanned, and ${line.serial} is to be tested. Scan ${line.serial}.`,
+      );
     const moved = await advanceRma(ctx, { rmaId: line.rmaId, act: "start_bench" });
     if (!moved.ok) return moved;
     const sheet = sheetFor(line.family);
@@ -139,9 +142,9 @@ export async function closeBench(
     if (test.closedAt) return refuse("conflict", "This test was closed already.");
     const line = (await benchLine(ctx, test.rmaLineId))!;
     if (!same(v.scan, line.serial))
-      return refuse("rule", `Stop: ${v.scan} was scanned out, and ${line.serial} was scanned in.`, {
-        fields: { scan: [`Scan ${line.serial}.`] },
-      });
+      return stopAt(
+        `Stop: ${v.scan} was scanned out, and ${line.serial} was scanned in. Scan ${line.serial}.`,
+      );
     const photos = (await photosOf(ctx, "bench_test", [v.testId])).get(v.testId) ?? [];
     const dockPhotos = (await photosOf(ctx, "receipt_line", [line.lineId])).get(line.lineId) ?? [];
     const verdict = mayClose({

@@ -130,6 +130,13 @@ export function Station({ expected, aside }: { expected: Expected[]; aside: Asid
     [rma, refresh],
   );
 
+  const checking = Object.values(facts.photos).some((list) => list.some((p) => p.state === "quarantined"));
+  useEffect(() => {
+    if (!checking) return;
+    const later = setInterval(() => void refresh(rma), 1500);
+    return () => clearInterval(later);
+  }, [checking, refresh, rma]);
+
   const again = useCallback((words: string) => {
     setWrong(null);
     setUnexpected(null);

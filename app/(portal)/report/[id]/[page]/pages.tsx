@@ -1,6 +1,6 @@
 "use client";
 import Link from "next/link";
-import { useActionState, type ReactNode } from "react";
+import { useActionState, useEffect, type ReactNode } from "react";
 import { useRouter } from "next/navigation";
 import { UNSENT, type FormState } from "@/app/_edge/form";
 import { Uploader } from "@/components/evidence/uploader";
@@ -191,6 +191,12 @@ export function EvidencePage(
   },
 ) {
   const router = useRouter();
+  const checking = p.files.some((f) => f.state === "quarantined");
+  useEffect(() => {
+    if (!checking) return;
+    const again = setInterval(() => router.refresh(), 1200);
+    return () => clearInterval(again);
+  }, [checking, router]);
   return (
     <Page {...p}>
       {() => (
