@@ -145,8 +145,10 @@ export async function closeBench(
       return stopAt(
         `Stop: ${v.scan} was scanned out, and ${line.serial} was scanned in. Scan ${line.serial}.`,
       );
-    const photos = (await photosOf(ctx, "bench_test", [v.testId])).get(v.testId) ?? [];
-    const dockPhotos = (await photosOf(ctx, "receipt_line", [line.lineId])).get(line.lineId) ?? [];
+    const shown = async (subject: "bench_test" | "receipt_line", id: string) =>
+      ((await photosOf(ctx, subject, [id])).get(id) ?? []).filter((p) => p.state !== "rejected");
+    const photos = await shown("bench_test", v.testId);
+    const dockPhotos = await shown("receipt_line", line.lineId);
     const verdict = mayClose({
       outcome: v.outcome,
       disposition: v.disposition,

@@ -85,7 +85,10 @@ export async function receiveLine(
       });
     if (line.state !== "open")
       return refuse("conflict", `${view.serial} is not expected any more: its line is ${line.state}.`);
-    const have = (await photosOf(ctx, "receipt_line", [v.lineId])).get(v.lineId) ?? [];
+    // A photo that the check threw out shows nothing.
+    const have = ((await photosOf(ctx, "receipt_line", [v.lineId])).get(v.lineId) ?? []).filter(
+      (p) => p.state !== "rejected",
+    );
     const missing = photosNeeded(view.family, v.condition).filter((s) => !have.some((p) => p.slot === s));
     if (missing.length > 0)
       return refuse(
