@@ -11,6 +11,7 @@ export default defineConfig({
   expect: { timeout: 15_000 },
   forbidOnly: true,
   use: {
+    actionTimeout: 20_000,
     screenshot: "only-on-failure",
     locale: "en-US",
     timezoneId: "Europe/London",
