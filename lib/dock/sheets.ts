@@ -165,8 +165,11 @@ export function sheetFor(family: string): Sheet {
 /** The verdict a reading gives by its limits; null where a person must say. */
 export function verdictOf(step: SheetStep, value: string): StepVerdict | null {
   if (!step.measure || (step.measure.min === undefined && step.measure.max === undefined)) return null;
-  const n = Number(value.replace(",", ".").replace(/[^\d.+-]/g, ""));
-  if (value.trim() === "" || !Number.isFinite(n)) return null;
+  // One number with its unit behind it. Words alone, two numbers, or a comma that may be a thousand's
+  // or a decimal's are a person's to judge: read wrongly, they would pass a bad part.
+  const read = /^\s*([+-]?\d+(?:[.,]\d+)?)[^\d]*$/.exec(value)?.[1];
+  if (read === undefined || /,\d{3}$/.test(read)) return null;
+  const n = Number(read.replace(",", "."));
   if (step.measure.min !== undefined && n < step.measure.min) return "fail";
   if (step.measure.max !== undefined && n > step.measure.max) return "fail";
   return "pass";
