@@ -8,6 +8,7 @@ import { permit } from "@/lib/auth/rules";
 import { parse } from "@/lib/base/parse";
 import { parsePeriod } from "@/lib/base/period";
 import { ok, refuse, type Result } from "@/lib/base/result";
+import { showDay } from "@/lib/base/show";
 import { actorName, type Ctx, type TxCtx } from "@/lib/ctx";
 import { defaultSite } from "@/lib/ledger/queries";
 import { CONDITIONS, FAMILIES } from "@/lib/ledger/schema";
@@ -148,6 +149,18 @@ export async function storeDecision(
         "This unit has no sale in the ledger, so there is nothing to decide by. Check the serial.",
       );
     const part = found.tree.find((p) => p.unitId === v.unitId);
+    // Without these two, a part that was replaced would be judged by its system's clause, and a unit
+    // that was credited or taken back by a sale that is over.
+    if (!part && v.unitId !== found.unit.id)
+      return refuse(
+        "rule",
+        `This part left ${found.unit.serial} some time ago. Decide about what stands in its slot now.`,
+      );
+    if (found.sale.endedOn !== null)
+      return refuse(
+        "rule",
+        `Its sale under order ${found.sale.orderNumber} ended on ${showDay(found.sale.endedOn)}, so no terms apply to it any more.`,
+      );
     const facts: DecideInput = {
       sale: {
         shippedOn: found.sale.shippedOn,

@@ -5,7 +5,7 @@ import { EVIDENCE_FOR, type ClauseFact, type DecideInput, type Decision, type Re
 import { clauseFor, windowsFor } from "./windows";
 
 /** Changes whenever one input could get another answer. Stored with each decision. */
-export const ENGINE = "1";
+export const ENGINE = "2";
 
 /** Faults that a clause may exclude, once the evidence shows them. */
 const EXCLUDABLE: Record<string, string> = {
@@ -76,6 +76,29 @@ function judge(input: DecideInput, windows: Decision["windows"]): Draft {
           fact: "log_of_this_serial",
           staff: "A log of the claimed serial.",
           customer: "A log of the part you chose.",
+        },
+      ],
+    );
+  }
+  const named = clauseFor(input.clauses, "cover", input.part.family, sale.condition);
+  if (!cover && named && input.part.swappedOn) {
+    const fitted = showDay(input.part.swappedOn);
+    return person(
+      input,
+      cover,
+      [
+        {
+          rule: "fitted_after_cover",
+          clause: named.number,
+          staff: `Clause ${named.number}, ${lower(named.title)}, had ended when this part was fitted on ${fitted}, and these terms give a part we fit no cover of its own.`,
+          customer: `The first cover had ended when we fitted this part on ${fitted}, so a person looks at what was agreed then.`,
+        },
+      ],
+      [
+        {
+          fact: "agreement",
+          staff: "What was agreed when the part was fitted, or goodwill.",
+          customer: "The note that came with this part.",
         },
       ],
     );
@@ -242,8 +265,9 @@ function laterStart(input: DecideInput, cover: Decision["windows"][number]): Dec
   const clause = input.clauses.find((c) => c.id === cover.clauseId)!;
   const changes: Decision["wouldChange"] = [];
   if (clause.startBasis === "delivered" && input.sale.deliveredOn === null) {
-    let day = addDays(cover.startOn, daysBetween(cover.lastOn, input.claimOn));
-    for (let i = 0; i < 5; i++) {
+    // Months differ in length, so the day sought lies a few days to either side of the plain difference.
+    let day = addDays(cover.startOn, Math.max(1, daysBetween(cover.lastOn, input.claimOn) - 4));
+    for (let i = 0; i < 9; i++) {
       const again = windowsFor({ ...input.sale, deliveredOn: day }, input.clauses, input.part, input.week);
       if ((again.find((w) => w.kind === "cover")?.lastOn ?? "") >= input.claimOn) break;
       day = addDays(day, 1);
