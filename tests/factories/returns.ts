@@ -96,8 +96,8 @@ export async function photo(
   return fileId!;
 }
 
-export async function received(s: Seller, serial: string, remedy?: Remedy) {
-  const rma = await authorized(s, serial, remedy);
+export async function received(s: Seller, serial: string, remedy?: Remedy, from?: Seller["sam"]) {
+  const rma = await authorized(s, serial, remedy, { from });
   for (const slot of ["label", "arrived"] as const) await photo(s, "receipt_line", rma.lineId, slot);
   must(
     await receiveLine(as(s.dock), {
@@ -111,8 +111,8 @@ export async function received(s: Seller, serial: string, remedy?: Remedy) {
 }
 
 /** Every step of the sheet read, at the bench; the test still open. */
-export async function tested(s: Seller, serial: string, remedy?: Remedy) {
-  const rma = await received(s, serial, remedy);
+export async function tested(s: Seller, serial: string, remedy?: Remedy, from?: Seller["sam"]) {
+  const rma = await received(s, serial, remedy, from);
   const { testId } = must(await startBench(as(s.bench), { lineId: rma.lineId, scan: serial }));
   for (const step of sheetFor("drive").steps)
     must(
