@@ -38,7 +38,8 @@ async function versionsInForce(ctx: TxCtx) {
     rows.find((r) => r.code === code && r.effectiveOn <= day)?.id ?? null;
 }
 
-async function withTerms(ctx: TxCtx, found: ReadShipments): Promise<ReadShipments> {
+/** Leaves out, and tells, the rows that no published terms cover. */
+export async function withTerms(ctx: TxCtx, found: ReadShipments): Promise<ReadShipments> {
   const inForce = await versionsInForce(ctx);
   const unknown = found.rows.filter((r) => inForce(r.terms, r.shippedOn) === null);
   if (unknown.length === 0) return found;

@@ -17,6 +17,7 @@ import { permit } from "@/lib/auth/rules";
 import { ok, refuse, type Result } from "@/lib/base/result";
 import { serialKey, serialLoose } from "@/lib/base/serial";
 import type { Ctx, TxCtx } from "@/lib/ctx";
+import { withTerms } from "./commands";
 import { groupShipments, readShipments, type ShipmentRow } from "./shipments";
 
 /** Systems (with all their parts) added in one transaction. */
@@ -37,7 +38,8 @@ export async function loadImport(ctx: Ctx, importId: string): Promise<Result<Shi
     const found = readShipments(batch.content);
     if (!found.ok) return found;
     await audit(ctx, { act: "ledger.import.load", subject: ["import", importId] });
-    return ok(groupShipments(found.value.rows));
+    // What the preview left out stays out: its unit would stand in the ledger without a sale.
+    return ok(groupShipments((await withTerms(ctx, found.value)).rows));
   });
 }
 

@@ -252,6 +252,18 @@ export function readShipments(bytes: Uint8Array): Result<ReadShipments> {
       bad.add(r.row);
     }
   }
+  for (const r of rows) {
+    const seen = new Set<ShipmentRow>();
+    let at: ShipmentRow | undefined = r;
+    while (at && !seen.has(at)) {
+      seen.add(at);
+      at = at.parentSerial === "" ? undefined : keys.get(serialKey(at.parentSerial));
+    }
+    if (at === r && !bad.has(r.row)) {
+      problems.push({ row: r.row, column: "parent serial", message: "Its parents lead back to itself." });
+      bad.add(r.row);
+    }
+  }
   for (let again = true; again;) {
     again = false;
     for (const r of rows) {
