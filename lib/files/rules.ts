@@ -53,13 +53,22 @@ export function judgeFile(f: {
       "unsupported",
       "This is neither a picture nor plain text. Send a JPEG or PNG photo, a video, or the log as text.",
     );
-  if (/^\s*(?:<\?xml[^>]*>\s*)?(?:<!doctype\s+(?:html|svg)|<html|<svg|<script)/i.test(f.head)) {
+  if (isMarkup(f.head)) {
     return refuse(
       "unsupported",
       "Web pages and drawings are not opened here. Send a photo, or the log as plain text.",
     );
   }
   return ok<FileVerdict>({ family: "text", type: "text/plain" });
+}
+
+/** A web page or a drawing, also behind comments and processing instructions that hide its first tag. */
+function isMarkup(head: string): boolean {
+  const hidden = /^(?:[\s\ufeff]|<!--[\s\S]*?(?:-->|$)|<\?[\s\S]*?(?:\?>|$))+/.exec(head)?.[0] ?? "";
+  const rest = head.slice(hidden.length);
+  return (
+    /^<(?:!doctype|html|svg|script|head|body|iframe)\b/i.test(rest) || (rest === "" && hidden.includes("<"))
+  );
 }
 
 /** A name to show and to offer for saving: no path, no marks that turn text around, no trailing dots. */
