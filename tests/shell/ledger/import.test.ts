@@ -43,8 +43,8 @@ const bare = () =>
   );
 const fleet = (order: string, n: number): Cells[] =>
   Array.from({ length: n }, (_, i) => {
-    const of = system(`OW2210-${order}${String(i).padStart(3, "0")}`, { order: `ORD-${order}` });
-    return [of, part(`VS19-${order}${String(i).padStart(3, "0")}`, of, "Drive bay 1")];
+    const of = system(`OW2210-${order}${String(i).padStart(4, "0")}`, { order: `ORD-${order}` });
+    return [of, part(`VS19-${order}${String(i).padStart(4, "0")}`, of, "Drive bay 1")];
   }).flat();
 
 describe("an import", () => {
@@ -148,36 +148,38 @@ describe("an import that breaks off", () => {
   }
 
   it("goes on where it was, wherever it broke: nothing twice, no sale without its windows", async () => {
-    const list = fleet("D", 230);
+    const list = fleet("D", 1000);
     const before = await counts();
     const { importId } = await preview(list);
     must(await startImport(as(s.admin), importId));
-    // In the first chunk's units, in its windows, in the second chunk, in its windows.
-    const seen: unknown[] = [];
-    for (const n of [50, 600, 1100, 600]) {
-      expect(await broken(importId, n), `at ${n}`).toBe(true);
-      seen.push((await batch(importId)).rows_done);
+    // Early in the first step's units; among windows, or some steps on; and far on, where it may be done.
+    expect(await broken(importId, 50)).toBe(true);
+    expect(await batch(importId)).toMatchObject({ state: "applying", rows_done: 0 });
+    expect(await counts()).toEqual(before);
+    for (const n of [3500, 6500]) {
+      const gone = await broken(importId, n);
+      const { rows_done: done } = await batch(importId);
+      if (n === 3500) expect(gone).toBe(true);
+      expect((await counts()).unit).toBe(before.unit! + Number(done));
       expect(await bare()).toEqual([]);
     }
-    expect(seen[0]).toBe(0);
-    expect(seen.at(-1)).toBeGreaterThan(0);
     await runDueJobs();
     expect(await batch(importId)).toMatchObject({
       state: "applied",
-      rows_done: 460,
-      added: { systems: 230, parts: 230, sales: 230 },
+      rows_done: 2000,
+      added: { systems: 1000, parts: 1000, sales: 1000 },
     });
     const after = await counts();
     expect(after).toMatchObject({
-      unit: before.unit! + 460,
-      sale_line: before.sale_line! + 230,
-      installation: before.installation! + 230,
+      unit: before.unit! + 2000,
+      sale_line: before.sale_line! + 1000,
+      installation: before.installation! + 1000,
     });
     expect(await bare()).toEqual([]);
   });
 
   it("stops between two steps when it is cancelled, keeps what was added, and tells it", async () => {
-    const { importId } = await preview(fleet("E", 120));
+    const { importId } = await preview(fleet("E", 900));
     must(await startImport(as(s.admin), importId));
     const groups = must(await loadImport(job(), importId));
     expect(must(await applyImportChunk(job(), importId, groups)).done).toBe(false);
@@ -185,23 +187,23 @@ describe("an import that breaks off", () => {
     const stopped = await counts();
     await runDueJobs();
     expect(await counts()).toEqual(stopped);
-    expect(await batch(importId)).toMatchObject({
-      state: "cancelled",
-      rows_done: 200,
-      added: { systems: 100 },
-    });
+    const cut = await batch(importId);
+    const done = Number(cut.rows_done) / 2;
+    expect(done).toBeGreaterThan(0);
+    expect(done).toBeLessThan(900);
+    expect(cut).toMatchObject({ state: "cancelled", added: { systems: done } });
     expect(await startImport(as(s.admin), importId)).toMatchObject({
       ok: false,
       refusal: { code: "rule", message: "This import was stopped. Send the file again." },
     });
     expect(await cancelImport(as(s.admin), importId)).toMatchObject({ ok: false, refusal: { code: "rule" } });
     // Sent again, the rest comes in and the first part is left as it is.
-    const again = await preview(fleet("E", 120));
+    const again = await preview(fleet("E", 900));
     must(await startImport(as(s.admin), again.importId));
     await runDueJobs();
     expect(await batch(again.importId)).toMatchObject({
       state: "applied",
-      added: { systems: 20, sales: 20 },
+      added: { systems: 900 - done, sales: 900 - done },
     });
   });
 });

@@ -80,7 +80,7 @@ describe("from a mail to a settled RMA", () => {
       await authorizeRma(step(s.agent), {
         ticketId,
         lines: [{ ticketUnitId }],
-        remedy: "advance_replacement",
+        remedy: "replacement_on_receipt",
       }),
     );
     expect(await storedIsFolded(ticketId)).toMatchObject({
@@ -228,14 +228,14 @@ describe("from a mail to a settled RMA", () => {
     const foreign = await authorizeRma(as(s.sam), {
       ticketId: ticket!.id,
       lines: [{ ticketUnitId: ticket!.tu }],
-      remedy: "advance_replacement",
+      remedy: "replacement_on_receipt",
     });
     expect(foreign).toMatchObject({ ok: false, refusal: { code: "not_found" } });
     const mine = must(
       await authorizeRma(as(s.dana), {
         ticketId: ticket!.id,
         lines: [{ ticketUnitId: ticket!.tu }],
-        remedy: "advance_replacement",
+        remedy: "replacement_on_receipt",
       }),
     );
     expect(mine.number).toMatch(/^RMA-\d+-[0-9A-Z]$/);
