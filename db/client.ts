@@ -82,6 +82,17 @@ export async function read<T>(ctx: Ctx, run: (tx: Tx) => Promise<T>): Promise<T>
  */
 export async function transact<T>(ctx: Ctx, run: (ctx: TxCtx) => Promise<Result<T>>): Promise<Result<T>> {
   if (ctx.tx) return run(ctx as TxCtx);
+  for (let tries = 0; ; tries++) {
+    try {
+      return await once(ctx, run);
+    } catch (thrown) {
+      // Two writers waited for each other, and PostgreSQL ended one: it has done nothing, and may try again.
+      if (tries >= 2 || !hasCode(thrown, "40P01", "40001")) throw thrown;
+    }
+  }
+}
+
+async function once<T>(ctx: Ctx, run: (ctx: TxCtx) => Promise<Result<T>>): Promise<Result<T>> {
   try {
     return await rawDb().transaction(async (tx) => {
       await takeRole(tx, ctx);
@@ -93,6 +104,13 @@ export async function transact<T>(ctx: Ctx, run: (ctx: TxCtx) => Promise<Result<
     if (thrown instanceof RolledBack) return thrown.result as Result<T>;
     throw thrown;
   }
+}
+
+function hasCode(thrown: unknown, ...codes: string[]): boolean {
+  for (let at: unknown = thrown; at instanceof Error; at = at.cause) {
+    if (codes.includes((at as Error & { code?: string }).code ?? "")) return true;
+  }
+  return false;
 }
 
 /** True when `thrown` is PostgreSQL's unique violation of the named constraint or index. */

@@ -14,27 +14,29 @@ import { sendReport } from "@/lib/tickets/report.commands";
 export async function begin(form: FormData): Promise<void> {
   const ctx = await currentCtx();
   const unitId = form.get("unitId");
-  const known = typeof unitId === "string" ? (await unitsByIds(ctx, [unitId])).length > 0 : false;
+  const known = (await unitsByIds(ctx, [idOf(unitId)])).length > 0;
   const started = await startReport(ctx, known ? { unitId: String(unitId) } : {});
   if (!started.ok) redirect("/sign-in");
   redirect(`/report/${started.value.reportId}/${known ? 2 : 1}`);
 }
 
 const text = (v: unknown): string => (typeof v === "string" ? v : "");
+const NONE = "00000000-0000-0000-0000-000000000000";
+/** An id as a form sends it; what is none finds nothing. */
+const idOf = (v: unknown): string =>
+  /^[0-9a-f]{8}(-[0-9a-f]{4}){3}-[0-9a-f]{12}$/.test(text(v)) ? text(v) : NONE;
 
 /** Keeps one page's answer and goes on; `back=check` returns to the check page. */
 export const answer = action(
   async (ctx, input) => {
-    const reportId = text(input.reportId);
+    const reportId = idOf(input.reportId);
     const page = Number(input.page);
     const no = (field: string, why: string) =>
       refuse("invalid", "One answer needs another look.", { fields: { [field]: [why] } });
     const answers: Record<string, string> = {};
     if (page === 1) {
       const typed = text(input.serial);
-      const unit = typed
-        ? await unitBySerial(ctx, typed)
-        : (await unitsByIds(ctx, text(input.unitId) ? [text(input.unitId)] : []))[0];
+      const unit = typed ? await unitBySerial(ctx, typed) : (await unitsByIds(ctx, [idOf(input.unitId)]))[0];
       if (!unit)
         return no(
           typed ? "serial" : "unitId",
@@ -74,7 +76,7 @@ export const answer = action(
 );
 
 export const send = action(
-  (ctx, input) => sendReport(ctx, text(input.reportId)),
+  (ctx, input) => sendReport(ctx, idOf(input.reportId)),
   ({ number }) => `/cases/${number}/decision`,
 );
 
@@ -89,6 +91,8 @@ export const answerCase = action(
 export const chooseRemedy = action(
   async (ctx, input) => {
     const battery = text(input.battery);
+    if (!["none", "inside", "damaged"].includes(battery))
+      return refuse("invalid", "Say first whether a battery is damaged.");
     return authorizeRma(ctx, {
       ticketId: text(input.ticketId),
       lines: [{ ticketUnitId: text(input.ticketUnitId) }],

@@ -9,7 +9,7 @@ function padded(from: string, last: string): string {
 }
 
 /** How the words over the flag hang: to its left near the end, to its right near the start. */
-const hang = (at: number) => (at >= 64 ? "-100%" : at <= 36 ? "0" : "-50%");
+const hang = (at: number) => `-${Math.min(100, Math.max(0, at)).toFixed(1)}%`;
 
 /**
  * Cover for a customer: one bar from shipping to its end with today's flag, months below. With

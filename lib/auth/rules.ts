@@ -11,11 +11,11 @@ type Who = Role | "customer" | "job" | "anonymous";
 export const MAY = {
   "ledger.import": ["admin", "job"],
   "ledger.read": ["agent", "warehouse", "manager", "admin", "job", "customer"],
-  "ledger.swap": ["warehouse", "job"],
+  "ledger.swap": ["warehouse", "agent", "manager", "job"],
   "ledger.move": ["warehouse", "agent", "manager", "job"],
   "terms.write": ["admin", "job"],
   "terms.read": ["agent", "warehouse", "manager", "admin", "job", "customer"],
-  "cover.refresh": ["admin", "warehouse", "job"],
+  "cover.refresh": ["admin", "warehouse", "agent", "manager", "job"],
   "cover.read": ["agent", "warehouse", "manager", "admin", "job", "customer"],
   "cover.decide": ["agent", "manager", "job", "customer"],
   "ticket.open": ["agent", "job", "customer"],

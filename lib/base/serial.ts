@@ -140,3 +140,12 @@ export function serialCandidates(text: string, limit = 20): string[] {
   }
   return [...found];
 }
+
+/** A serial out of a path: decoded once, and as it is where its percent signs mean nothing. */
+export function serialInPath(text: string): string {
+  try {
+    return decodeURIComponent(text);
+  } catch {
+    return text;
+  }
+}

@@ -1,26 +1,28 @@
 import { and, eq, sql } from "drizzle-orm";
-import type { z } from "zod";
+import { z } from "zod";
 import { transact } from "@/db/client";
 import { benchTests, replacements, sanitizationRecords, shipments, stepReadings } from "@/db/schema/dock";
-import { installations, saleLines } from "@/db/schema/ledger";
+import { installations, saleLines, units } from "@/db/schema/ledger";
 import { audit } from "@/lib/audit/commands";
 import { permit } from "@/lib/auth/rules";
 import { civilDayIn } from "@/lib/base/civil";
 import { parse } from "@/lib/base/parse";
 import { ok, refuse, type Result } from "@/lib/base/result";
 import { serialKey } from "@/lib/base/serial";
+import { showDay } from "@/lib/base/show";
 import { inheritedCover, refreshCover } from "@/lib/coverage/commands";
+import { coverFor } from "@/lib/coverage/queries";
 import { actorName, type Ctx, type TxCtx } from "@/lib/ctx";
 import { env } from "@/lib/env";
 import { endSale, moveUnit, replaceSystem, swapPart } from "@/lib/ledger/commands";
 import { modelsOf, unitBySerial } from "@/lib/ledger/queries";
 import { enqueueMail } from "@/lib/mail/commands";
-import { advanceRma, setLineState, settleRma } from "@/lib/rma/commands";
+import { advanceRma, lockLine, setLineState, settleRma } from "@/lib/rma/commands";
 import { rmaById } from "@/lib/rma/queries";
 import { recordEntry } from "@/lib/tickets/commands";
 import { fit } from "./fit";
 import { benchLine, photosOf, type BenchView } from "./queries";
-import { mayClose } from "./rules";
+import { mayClose, mayFollow } from "./rules";
 import { CloseBench, KeepReading, SendBack, ShipOut, StartBench, TEST_OUTCOME_WORDS } from "./schema";
 import { sheetFor, verdictOf } from "./sheets";
 
@@ -39,6 +41,7 @@ export async function startBench(
   const input = parse(StartBench, raw);
   if (!input.ok) return input;
   return transact(ctx, async (ctx) => {
+    await lockLine(ctx, input.value.lineId);
     const line = await benchLine(ctx, input.value.lineId);
     if (!line) return refuse("not_found", "This unit is not at the bench.");
     if (line.test) return ok({ testId: line.test.id });
@@ -230,6 +233,17 @@ export async function closeBench(
       automatic: true,
     });
     if (!told.ok) return told;
+    if (line.replacement) {
+      // Its replacement went out in advance: with the old part judged, all is done.
+      const done = await setLineState(ctx, { lineId: line.lineId, state: "settled" });
+      if (!done.ok) return done;
+      const settled = await settleWhenDone(
+        ctx,
+        line.rmaId,
+        `${line.replacement.serialOut} went out for ${line.serial}, which is back.`,
+      );
+      if (!settled.ok) return settled;
+    }
     await audit(ctx, {
       act: "bench.close",
       subject: ["bench_test", v.testId],
@@ -280,12 +294,27 @@ export async function shipReplacement(
   if (!input.ok) return input;
   const v = input.value;
   return transact(ctx, async (ctx) => {
+    await lockLine(ctx, v.lineId);
     const line = await benchLine(ctx, v.lineId);
     if (!line) return refuse("not_found", "This line is not there.");
     if (line.replacement) return refuse("conflict", `${line.replacement.serialOut} went out for it already.`);
-    if (line.lineState !== "tested")
-      return refuse("rule", "Close its test first: what goes out depends on what was found.");
-    const out = await unitBySerial(ctx, v.serial);
+    // In advance: promised before anything has come back.
+    const ahead =
+      line.remedy === "advance_replacement" && (line.lineState === "open" || line.lineState === "received");
+    if (!ahead) {
+      if (line.lineState !== "tested" || !line.test?.outcome || !line.test.disposition)
+        return refuse("rule", "Close its test first: what goes out depends on what was found.");
+      const follows = mayFollow("replacement", {
+        remedy: line.remedy,
+        outcome: line.test.outcome,
+        disposition: line.test.disposition,
+      });
+      if (!follows.ok) return follows;
+    }
+    const named = await unitBySerial(ctx, v.serial);
+    if (named)
+      await ctx.tx.select({ id: units.id }).from(units).where(eq(units.id, named.unitId)).for("update");
+    const out = named ? await unitBySerial(ctx, v.serial) : null;
     if (!out)
       return refuse("not_found", `${v.serial} is not in the ledger. Scan the label again.`, {
         fields: { serial: ["Scan the label again."] },
@@ -352,6 +381,11 @@ export async function shipReplacement(
     if (!moved.ok) return moved;
     const refreshed = await refreshCover(ctx, saleIds);
     if (!refreshed.ok) return refreshed;
+    // What is told is what the engine gives from now on, not what was reckoned before.
+    const now = (await coverFor(ctx, out.unitId, today))?.rows.find(
+      (r) => r.unitId === out.unitId && r.kind === "cover",
+    );
+    const lastCoveredOn = now?.lastOn ?? null;
     const rma = (await rmaById(ctx, line.rmaId))!;
     const shipmentId = await ship(ctx, line, rma.accountId, v.carrier, v.tracking);
     await ctx.tx.insert(replacements).values({
@@ -362,15 +396,22 @@ export async function shipReplacement(
       unitReplacedId: line.unitId,
       installationId,
       shipmentId,
-      lastCoveredOn: cover?.lastCoveredOn ?? null,
+      lastCoveredOn,
       reasons: cover ? [cover.words] : [],
       warnings: match.warnings,
       scannedOutAt: ctx.now,
       scannedOutByName: actorName(ctx.actor),
     });
-    const state = await setLineState(ctx, { lineId: line.lineId, state: "settled" });
-    if (!state.ok) return state;
-    const words = cover?.words ?? "cover as before";
+    if (!ahead) {
+      const state = await setLineState(ctx, { lineId: line.lineId, state: "settled" });
+      if (!state.ok) return state;
+    }
+    const words =
+      cover && cover.lastCoveredOn === lastCoveredOn
+        ? cover.words
+        : lastCoveredOn
+          ? `covered to ${showDay(lastCoveredOn)}`
+          : "cover as before";
     const entry = await recordEntry(ctx, {
       ticketId: line.ticketId,
       kind: "replacement_shipped",
@@ -378,7 +419,8 @@ export async function shipReplacement(
       data: {
         serialOut: out.serial,
         serialReplaced: line.serial,
-        lastCoveredOn: cover?.lastCoveredOn ?? null,
+        lastCoveredOn,
+        ahead,
         carrier: v.carrier,
         tracking: v.tracking,
         rmaId: line.rmaId,
@@ -409,10 +451,10 @@ export async function shipReplacement(
     await audit(ctx, {
       act: "dock.ship",
       subject: ["rma_line", line.lineId],
-      after: { serialOut: out.serial, lastCoveredOn: cover?.lastCoveredOn ?? null },
+      after: { serialOut: out.serial, lastCoveredOn, ahead },
     });
     const after = (await rmaById(ctx, line.rmaId))!;
-    return ok({ lastCoveredOn: cover?.lastCoveredOn ?? null, settled: after.state === "settled", words });
+    return ok({ lastCoveredOn, settled: after.state === "settled", words });
   });
 }
 
@@ -427,10 +469,16 @@ export async function sendBack(
   if (!input.ok) return input;
   const v = input.value;
   return transact(ctx, async (ctx) => {
+    await lockLine(ctx, v.lineId);
     const line = await benchLine(ctx, v.lineId);
-    if (!line?.test?.closedAt) return refuse("rule", "Close its test first.");
-    if (line.test.disposition !== "send_back" && line.test.disposition !== "repair")
-      return refuse("rule", "Its disposition keeps it here. A replacement goes out instead.");
+    if (!line?.test?.closedAt || !line.test.outcome || !line.test.disposition)
+      return refuse("rule", "Close its test first.");
+    const follows = mayFollow("back", {
+      remedy: line.remedy,
+      outcome: line.test.outcome,
+      disposition: line.test.disposition,
+    });
+    if (!follows.ok) return follows;
     if (line.lineState !== "tested") return refuse("conflict", "This line is done already.");
     const rma = (await rmaById(ctx, line.rmaId))!;
     await ship(ctx, line, rma.accountId, v.carrier, v.tracking);
@@ -471,11 +519,19 @@ export async function settleByMoney(
 ): Promise<Result<{ settled: boolean }>> {
   const may = permit(ctx, "rma.settle");
   if (!may.ok) return may;
+  const input = parse(z.object({ lineId: z.uuid() }), raw);
+  if (!input.ok) return input;
   return transact(ctx, async (ctx) => {
-    const line = await benchLine(ctx, raw.lineId);
-    if (!line?.test?.closedAt) return refuse("rule", "Close its test first.");
-    if (line.remedy !== "credit" && line.remedy !== "refund")
-      return refuse("rule", "The remedy of this line is not money.");
+    await lockLine(ctx, input.value.lineId);
+    const line = await benchLine(ctx, input.value.lineId);
+    if (!line?.test?.closedAt || !line.test.outcome || !line.test.disposition)
+      return refuse("rule", "Close its test first.");
+    const follows = mayFollow("money", {
+      remedy: line.remedy,
+      outcome: line.test.outcome,
+      disposition: line.test.disposition,
+    });
+    if (!follows.ok) return follows;
     if (line.lineState !== "tested") return refuse("conflict", "This line is done already.");
     const ended = await endSale(ctx, {
       unitId: line.unitId,
@@ -483,6 +539,8 @@ export async function settleByMoney(
       reason: line.remedy,
     });
     if (!ended.ok) return ended;
+    const refreshed = await refreshCover(ctx, ended.value.saleLineIds);
+    if (!refreshed.ok) return refreshed;
     const state = await setLineState(ctx, { lineId: line.lineId, state: "settled" });
     if (!state.ok) return state;
     const settled = await settleWhenDone(

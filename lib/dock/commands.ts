@@ -14,7 +14,7 @@ import { env } from "@/lib/env";
 import { moveUnit } from "@/lib/ledger/commands";
 import { unitBySerial } from "@/lib/ledger/queries";
 import { enqueueMail } from "@/lib/mail/commands";
-import { advanceRma, setLineState } from "@/lib/rma/commands";
+import { advanceRma, lockLine, setLineState } from "@/lib/rma/commands";
 import { rmaById } from "@/lib/rma/queries";
 import { recordEntry } from "@/lib/tickets/commands";
 import { photosOf } from "./queries";
@@ -61,7 +61,8 @@ export async function receiveLine(
   if (!input.ok) return input;
   const v = input.value;
   return transact(ctx, async (ctx) => {
-    const [line] = await ctx.tx.select().from(rmaLines).where(eq(rmaLines.id, v.lineId)).for("update");
+    await lockLine(ctx, v.lineId);
+    const [line] = await ctx.tx.select().from(rmaLines).where(eq(rmaLines.id, v.lineId));
     if (!line) return refuse("not_found", "This line is not on any RMA.");
     const rma = (await rmaById(ctx, line.rmaId))!;
     const [done] = await ctx.tx.select().from(receiptLines).where(eq(receiptLines.rmaLineId, v.lineId));

@@ -1,4 +1,4 @@
-import { and, asc, desc, eq, inArray, isNull, sql } from "drizzle-orm";
+import { and, asc, desc, eq, inArray, isNull, or, sql } from "drizzle-orm";
 import { read } from "@/db/client";
 import {
   benchTests,
@@ -231,7 +231,17 @@ export async function benchQueue(ctx: Ctx, limit = 100): Promise<BenchRow[]> {
       .innerJoin(units, eq(units.id, rmaLines.unitId))
       .innerJoin(models, eq(models.id, units.modelId))
       .leftJoin(benchTests, eq(benchTests.rmaLineId, rmaLines.id))
-      .where(inArray(rmaLines.state, ["received", "tested"]))
+      .where(
+        or(
+          inArray(rmaLines.state, ["received", "tested"]),
+          // Promised in advance, and nothing has gone out for it yet.
+          and(
+            eq(rmaLines.state, "open"),
+            eq(rmaLines.remedy, "advance_replacement"),
+            sql`not exists (select from replacement rp where rp.rma_line_id = ${rmaLines.id})`,
+          ),
+        ),
+      )
       .orderBy(sql`${rmaLines.state} = 'tested'`, sql`${tickets.dueAt} asc nulls last`, asc(rmaLines.id))
       .limit(limit),
   );

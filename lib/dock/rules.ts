@@ -100,3 +100,27 @@ export function mayClose(f: CloseFacts): Result<undefined> {
 
 /** A place in the warehouse as it is printed on the bay: A-12, Q-2. */
 export const isPlace = (text: string): boolean => /^[A-Z]{1,2}-?\d{1,3}$/i.test(text.trim());
+
+export type Follows = "replacement" | "back" | "money";
+export type FollowFacts = { remedy: string; outcome: TestOutcome; disposition: Disposition };
+
+/** What may follow a closed test: a replacement, the same unit back, or money. Each refusal says what does. */
+export function mayFollow(how: Follows, f: FollowFacts): Result<undefined> {
+  const money = f.remedy === "credit" || f.remedy === "refund";
+  const repaired = f.remedy === "repair" && f.disposition === "repair";
+  const back = f.disposition === "send_back" || repaired;
+  if (how === "back") {
+    return back ? ok() : refuse("rule", "Its disposition keeps it here. What was promised goes out instead.");
+  }
+  if (f.disposition === "send_back")
+    return refuse("rule", "After this test the same unit goes back, and nothing else.");
+  if (f.outcome === "damage_not_covered")
+    return refuse("rule", "The damage is not covered, so nothing goes out for it.");
+  if (how === "money") {
+    return money && f.outcome === "fault_confirmed"
+      ? ok()
+      : refuse("rule", `The remedy is ${f.remedy.replace(/_/g, " ")}, not money for a fault found.`);
+  }
+  if (money) return refuse("rule", `The remedy is a ${f.remedy}: nothing goes out, the sale ends.`);
+  return ok();
+}

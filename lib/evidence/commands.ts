@@ -38,6 +38,16 @@ export async function addEvidence(
       .from(files)
       .where(inArray(files.id, v.fileIds));
     if (found.length === 0) return refuse("not_found", "These files are not there. Send them again.");
+    if (v.reportId) {
+      // Read under the sender's own rights: a foreign key alone would let a foreign id through.
+      const [report] = await ctx.tx
+        .select({ sentAt: reports.sentAt })
+        .from(reports)
+        .where(eq(reports.id, v.reportId));
+      if (!report) return refuse("not_found", "This report is not there. Start again from your equipment.");
+      if (report.sentAt)
+        return refuse("conflict", "This report was sent already. Add the file in your case.");
+    }
     const rows = found.map((f) => ({
       id: ctx.newId(),
       fileId: f.id,

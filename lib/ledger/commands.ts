@@ -211,7 +211,10 @@ export async function moveUnit(ctx: Ctx, raw: z.input<typeof MoveUnit>): Promise
 }
 
 /** A sale ends: credited, refunded or taken over by another unit. Its parts' places end with it. */
-export async function endSale(ctx: Ctx, raw: z.input<typeof EndSale>): Promise<Result<undefined>> {
+export async function endSale(
+  ctx: Ctx,
+  raw: z.input<typeof EndSale>,
+): Promise<Result<{ saleLineIds: string[] }>> {
   const may = permit(ctx, "ledger.swap");
   if (!may.ok) return may;
   const input = parse(EndSale, raw);
@@ -223,6 +226,17 @@ export async function endSale(ctx: Ctx, raw: z.input<typeof EndSale>): Promise<R
       .set({ endedOn: onDay, endedReason: reason })
       .where(and(eq(saleLines.unitId, unitId), isNull(saleLines.endedOn)))
       .returning({ id: saleLines.id });
+    // A part that was sold in its system has no sale of its own: its place ends.
+    const left =
+      ended.length > 0
+        ? []
+        : await ctx.tx
+            .update(installations)
+            .set({ toOn: sql`greatest(${onDay}::date, ${installations.fromOn})`, removedReason: reason })
+            .where(and(eq(installations.unitId, unitId), isNull(installations.toOn)))
+            .returning({ saleLineId: installations.saleLineId });
+    if (ended.length === 0 && left.length === 0)
+      return refuse("rule", "This unit has no open sale and no place: there is nothing to end.");
     for (const line of ended) {
       await ctx.tx
         .update(installations)
@@ -230,7 +244,9 @@ export async function endSale(ctx: Ctx, raw: z.input<typeof EndSale>): Promise<R
         .where(and(eq(installations.saleLineId, line.id), isNull(installations.toOn)));
     }
     await audit(ctx, { act: "ledger.end_sale", subject: ["unit", unitId], after: { onDay, reason } });
-    return ok();
+    return ok({
+      saleLineIds: [...ended.map((e) => e.id), ...left.flatMap((l) => (l.saleLineId ? [l.saleLineId] : []))],
+    });
   });
 }
 
@@ -268,6 +284,11 @@ export async function replaceSystem(
       endedReason: null,
       createdAt: ctx.now,
     });
+    // What stands in the new unit stands under the sale it took over.
+    await ctx.tx
+      .update(installations)
+      .set({ saleLineId })
+      .where(and(eq(installations.parentUnitId, newUnitId), isNull(installations.toOn)));
     await audit(ctx, {
       act: "ledger.replace_system",
       subject: ["unit", oldUnitId],

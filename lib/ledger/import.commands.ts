@@ -20,8 +20,10 @@ import type { Ctx, TxCtx } from "@/lib/ctx";
 import { withTerms } from "./commands";
 import { groupShipments, readShipments, type ShipmentRow } from "./shipments";
 
-/** Systems (with all their parts) added in one transaction. */
-const CHUNK = 100;
+/** Rows added in one transaction, whole systems at a time. */
+const CHUNK_ROWS = 1500;
+/** Rows in one statement: PostgreSQL takes 65 535 parameters. */
+const SLICE = 3000;
 
 export type ImportStep = { done: boolean; saleLineIds: string[] };
 
@@ -72,7 +74,9 @@ export async function applyImportChunk(
     let skipped = 0;
     let from = 0;
     while (from < groups.length && skipped < batch.rowsDone) skipped += groups[from++]!.length;
-    const chunk = groups.slice(from, from + CHUNK);
+    let to = from;
+    for (let n = 0; to < groups.length && n < CHUNK_ROWS; to++) n += groups[to]!.length;
+    const chunk = groups.slice(from, to);
     const added = await addGroups(ctx, chunk, importId);
     const rowsDone = batch.rowsDone + chunk.reduce((n, g) => n + g.length, 0);
     const done = from + chunk.length >= groups.length;
@@ -234,23 +238,28 @@ async function addGroups(ctx: TxCtx, groups: ShipmentRow[][], importId: string) 
   }
 
   const keys = rows.map((r) => serialKey(r.serial));
-  const newUnits = await tx
-    .insert(units)
-    .values(
-      rows.map((r) => ({
-        id: ctx.newId(),
-        serial: r.serial,
-        serialKey: serialKey(r.serial),
-        serialLoose: serialLoose(r.serial),
-        modelId: modelIds.get(r.model)!,
-        lotId: lotIds.get(`${r.supplier.toUpperCase()}|${r.lot}`) ?? null,
-        condition: r.condition,
-        whereabouts: "customer" as const,
-        createdAt: ctx.now,
-      })),
-    )
-    .onConflictDoNothing()
-    .returning({ id: units.id, key: units.serialKey });
+  const newUnits: { id: string; key: string }[] = [];
+  for (let at = 0; at < rows.length; at += SLICE) {
+    newUnits.push(
+      ...(await tx
+        .insert(units)
+        .values(
+          rows.slice(at, at + SLICE).map((r) => ({
+            id: ctx.newId(),
+            serial: r.serial,
+            serialKey: serialKey(r.serial),
+            serialLoose: serialLoose(r.serial),
+            modelId: modelIds.get(r.model)!,
+            lotId: lotIds.get(`${r.supplier.toUpperCase()}|${r.lot}`) ?? null,
+            condition: r.condition,
+            whereabouts: "customer" as const,
+            createdAt: ctx.now,
+          })),
+        )
+        .onConflictDoNothing()
+        .returning({ id: units.id, key: units.serialKey })),
+    );
+  }
   const fresh = new Set(newUnits.map((u) => u.key));
   counts.systems = rows.filter((r) => r.kind === "system" && fresh.has(serialKey(r.serial))).length;
   counts.parts = rows.filter((r) => r.kind === "part" && fresh.has(serialKey(r.serial))).length;
@@ -358,11 +367,12 @@ async function addGroups(ctx: TxCtx, groups: ShipmentRow[][], importId: string) 
     if (sale) for (const r of group) rootSale.set(serialKey(r.serial), sale);
   }
   const placed = rows.filter((r) => r.parentSerial !== "" && rootSale.has(serialKey(r.serial)));
-  if (placed.length > 0)
-    await tx
+  for (let at = 0; at < placed.length; at += SLICE) {
+    const slice = placed.slice(at, at + SLICE);
+    const put = await tx
       .insert(installations)
       .values(
-        placed.map((r) => ({
+        slice.map((r) => ({
           id: ctx.newId(),
           parentUnitId: unitIds.get(serialKey(r.parentSerial))!,
           unitId: unitIds.get(serialKey(r.serial))!,
@@ -373,6 +383,22 @@ async function addGroups(ctx: TxCtx, groups: ShipmentRow[][], importId: string) 
           createdAt: ctx.now,
         })),
       )
-      .onConflictDoNothing();
+      .onConflictDoNothing()
+      .returning({ unitId: installations.unitId });
+    const stands = new Set(put.map((p) => p.unitId));
+    if (stands.size > 0)
+      await tx
+        .update(units)
+        .set({ whereabouts: "customer", place: null })
+        .where(inArray(units.id, [...stands]));
+    for (const r of slice) {
+      if (stands.has(unitIds.get(serialKey(r.serial))!)) continue;
+      problems.push({
+        row: r.row,
+        column: "serial",
+        message: `${r.serial} still stands in another unit, or its slot is taken. Record that swap first, then add it.`,
+      });
+    }
+  }
   return { counts, problems, saleLineIds };
 }

@@ -20,7 +20,15 @@ import { enqueueMail } from "@/lib/mail/commands";
 import { recordEntry } from "@/lib/tickets/commands";
 import { openLineOf } from "./queries";
 import { canStep, cautionsFor, rmaNumber, sendBy, type RmaAct } from "./rules";
-import { AuthorizeRma, DeclineRma, MarkSent, WithdrawRma, type RmaState } from "./schema";
+import {
+  AuthorizeRma,
+  DeclineRma,
+  MarkSent,
+  WithdrawRma,
+  type RmaState,
+  FEE_KINDS,
+  type FeeKind,
+} from "./schema";
 
 async function nextNumber(ctx: TxCtx): Promise<string> {
   for (;;) {
@@ -66,6 +74,7 @@ export async function authorizeRma(
           unitId: ticketUnits.unitId,
           slot: ticketUnits.slot,
           state: ticketUnits.state,
+          answers: ticketUnits.answers,
           faultWords: ticketUnits.faultWords,
           serial: units.serial,
           modelName: models.name,
@@ -109,10 +118,26 @@ export async function authorizeRma(
         )
         .orderBy(sql`${coverageDecisions.madeAt} desc`);
       const newest = (unitId: string) => decisions.find((d) => d.unitId === unitId);
+      const harmed = lines.find((l) => l.answers.battery === "damaged");
+      if (harmed) {
+        return refuse(
+          "rule",
+          `The customer reports a damaged battery in ${harmed.serial}: no label for it. Call them, have it isolated, and arrange collection by who may carry it.`,
+        );
+      }
       for (const l of lines) {
         const d = newest(l.unitId);
         if (!d) return refuse("rule", `Take the coverage decision for ${l.serial} first.`);
         const covers = d.outcome === "covered" || d.outcome === "covered_doa";
+        if (
+          d.outcome === "not_covered" &&
+          !(ctx.actor.kind === "staff" && ctx.actor.roles.includes("manager"))
+        ) {
+          return refuse(
+            "rule",
+            `${l.serial} is not covered. Decide again with new facts, or ask a manager: goodwill is theirs to grant.`,
+          );
+        }
         if (ctx.actor.kind === "customer" && !covers)
           return refuse("rule", "A person of the desk must look at this first. You hear from us.");
         if (covers && !d.remedies.includes(v.remedy))
@@ -164,12 +189,18 @@ export async function authorizeRma(
           state: "open",
           sort,
         });
-        for (const fee of (decision.answer as Decision).fees.filter((f) => f.kind === "no_fault_found")) {
+        // Told before, or it may not be asked for: every fee that this remedy can bring.
+        const mayApply = (decision.answer as Decision).fees.filter(
+          (f) =>
+            (FEE_KINDS as readonly string[]).includes(f.kind) &&
+            (f.kind !== "not_returned" || v.remedy === "advance_replacement"),
+        );
+        for (const fee of mayApply) {
           await ctx.tx.insert(feeNotices).values({
             id: ctx.newId(),
             rmaLineId: lineId,
             accountId,
-            kind: "no_fault_found",
+            kind: fee.kind as FeeKind,
             cents: fee.cents,
             currency: "EUR",
             words: fee.words,
@@ -283,6 +314,18 @@ export async function advanceRma(
   });
 }
 
+/**
+ * Locks a line for what follows: first its RMA, then itself, everywhere in this order, so that the
+ * dock, the bench and a withdrawal cannot wait for each other. Null when there is no such line.
+ */
+export async function lockLine(ctx: TxCtx, lineId: string): Promise<{ rmaId: string } | null> {
+  const [line] = await ctx.tx.select({ rmaId: rmaLines.rmaId }).from(rmaLines).where(eq(rmaLines.id, lineId));
+  if (!line) return null;
+  await ctx.tx.select({ id: rmas.id }).from(rmas).where(eq(rmas.id, line.rmaId)).for("update");
+  await ctx.tx.select({ id: rmaLines.id }).from(rmaLines).where(eq(rmaLines.id, lineId)).for("update");
+  return line;
+}
+
 /** Sets the state of one line: received, tested, settled. */
 export async function setLineState(
   ctx: Ctx,
@@ -362,13 +405,16 @@ export async function declineClaim(
   if (!input.ok) return input;
   const v = input.value;
   return transact(ctx, async (ctx) => {
-    const [ticket] = await ctx.tx.select().from(tickets).where(eq(tickets.id, v.ticketId));
+    const [ticket] = await ctx.tx.select().from(tickets).where(eq(tickets.id, v.ticketId)).for("update");
     const [unit] = await ctx.tx
       .select({ unitId: ticketUnits.unitId, serial: units.serial })
       .from(ticketUnits)
       .innerJoin(units, eq(units.id, ticketUnits.unitId))
-      .where(eq(ticketUnits.id, v.ticketUnitId));
+      .where(and(eq(ticketUnits.id, v.ticketUnitId), eq(ticketUnits.ticketId, v.ticketId)));
     if (!ticket || !unit) return refuse("not_found", "This ticket is not there.");
+    if (ticket.closedAt) return refuse("conflict", "This ticket is closed already; its letter was sent.");
+    const open = await openLineOf(ctx, unit.unitId);
+    if (open) return refuse("conflict", `${unit.serial} is on ${open.rmaNumber}. Withdraw that first.`);
     const [decision] = await ctx.tx
       .select({ answer: coverageDecisions.answer, outcome: coverageDecisions.outcome })
       .from(coverageDecisions)

@@ -2,6 +2,7 @@ import { and, eq, isNull, sql } from "drizzle-orm";
 import { z } from "zod";
 import { transact } from "@/db/client";
 import { evidence } from "@/db/schema/evidence";
+import { files } from "@/db/schema/files";
 import { contacts, installations, saleLines, units } from "@/db/schema/ledger";
 import { messages } from "@/db/schema/mail";
 import { rmaLines, rmas } from "@/db/schema/rma";
@@ -236,6 +237,11 @@ export async function tieUnit(
         .where(eq(tickets.id, ticketId));
       await ctx.tx.update(messages).set({ accountId }).where(eq(messages.ticketId, ticketId));
       await ctx.tx.update(evidence).set({ accountId }).where(eq(evidence.ticketId, ticketId));
+      await ctx.tx.update(ticketUnits).set({ accountId }).where(eq(ticketUnits.ticketId, ticketId));
+      await ctx.tx
+        .update(files)
+        .set({ accountId })
+        .where(sql`${files.id} in (select file_id from evidence where ticket_id = ${ticketId})`);
     }
     const tied = await addTicketUnit(ctx, { ticketId, unitId, state: "tied", faultWords: ticket.faultWords });
     if (!tied.ok) return tied;
@@ -358,14 +364,38 @@ export async function takeDecision(
   });
 }
 
+/** Refuses when the ticket has moved on since the caller read it. Holds its lock until the end. */
+async function atVersion(
+  ctx: TxCtx,
+  ticketId: string,
+  version: number | undefined,
+): Promise<Result<undefined>> {
+  if (version === undefined) return ok();
+  const [now] = await ctx.tx
+    .select({ version: tickets.version })
+    .from(tickets)
+    .where(eq(tickets.id, ticketId))
+    .for("update");
+  if (!now || now.version === version) return ok();
+  return refuse("stale", "The ticket has changed since you read it. Read it again.", {
+    details: { version: now.version },
+  });
+}
+
 /** A person of the desk answers, or the customer answers in the portal. Both are in one record. */
-export async function reply(ctx: Ctx, raw: z.input<typeof Reply>): Promise<Result<{ ref: string }>> {
+export async function reply(
+  ctx: Ctx,
+  raw: z.input<typeof Reply>,
+  version?: number,
+): Promise<Result<{ ref: string }>> {
   const may = permit(ctx, "ticket.reply");
   if (!may.ok) return may;
   const input = parse(Reply, raw);
   if (!input.ok) return input;
   const { ticketId, text } = input.value;
   return transact(ctx, async (ctx) => {
+    const current = await atVersion(ctx, ticketId, version);
+    if (!current.ok) return current;
     const ticket = await ticketOf(ctx, ticketId);
     if (!ticket) return refuse("not_found", "This ticket is not there.");
     const first = text.split("\n").find((l) => l.trim() !== "") ?? text;
@@ -460,13 +490,19 @@ export async function askEvidence(
 }
 
 /** A note that no customer ever sees. */
-export async function addNote(ctx: Ctx, raw: z.input<typeof AddNote>): Promise<Result<{ ref: string }>> {
+export async function addNote(
+  ctx: Ctx,
+  raw: z.input<typeof AddNote>,
+  version?: number,
+): Promise<Result<{ ref: string }>> {
   const may = permit(ctx, "ticket.note");
   if (!may.ok) return may;
   const input = parse(AddNote, raw);
   if (!input.ok) return input;
   return transact(ctx, async (ctx) => {
     const { ticketId, text } = input.value;
+    const current = await atVersion(ctx, ticketId, version);
+    if (!current.ok) return current;
     const entry = await recordEntry(ctx, {
       ticketId,
       kind: "note",

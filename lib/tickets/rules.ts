@@ -94,7 +94,9 @@ function moveAfter(state: TicketState, entry: EntryFact): Move {
     case "rma_requested":
       return { on: "us", for: "authorize" };
     case "rma_authorized":
-      return { on: "customer", for: "send the part" };
+      return data.remedy === "advance_replacement"
+        ? { on: "dock", for: "send the replacement first" }
+        : { on: "customer", for: "send the part" };
     case "rma_declined":
     case "rma_expired":
     case "rma_withdrawn":
@@ -112,6 +114,8 @@ function moveAfter(state: TicketState, entry: EntryFact): Move {
         ? { on: "us", for: "tell the customer" }
         : { on: "dock", for: "ship what follows" };
     case "replacement_shipped":
+      if (data.ahead === true)
+        return state.waitingOn === "dock" ? { on: "customer", for: "send the old part" } : null;
       return { on: "carrier", for: "deliver the replacement" };
     case "rma_settled":
     case "closed":

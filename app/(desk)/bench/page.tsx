@@ -45,6 +45,7 @@ export default async function Bench() {
         <Empty title="The bench is clear.">The next test starts when the dock takes a unit in.</Empty>
       ) : null}
       {[
+        { name: "To send ahead", list: rows.filter((r) => r.lineState === "open") },
         { name: "To test", list: waiting },
         { name: "To go out", list: tested },
       ].map((g) =>

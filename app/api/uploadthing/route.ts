@@ -8,6 +8,7 @@ import { keepPhoto } from "@/lib/dock/commands";
 import { KeepPhoto } from "@/lib/dock/schema";
 import { addEvidence } from "@/lib/evidence/commands";
 import { fileArrived, promiseFiles } from "@/lib/files/commands";
+import { attachEvidence } from "@/lib/tickets/commands";
 import type { FilePurpose } from "@/lib/files/schema";
 
 const f = createUploadthing({
@@ -79,6 +80,20 @@ const router = {
       return promise(ctx, files, "evidence", async (ctx, fileIds) => {
         if (ctx.actor.kind !== "customer")
           throw new UploadThingError({ code: "FORBIDDEN", message: "Sign in as the customer." });
+        // To a case: with its entry in the record, and only to a case of theirs.
+        if (input.ticketId) {
+          said(
+            await attachEvidence(ctx, {
+              ticketId: input.ticketId,
+              fileIds,
+              source: "portal",
+              fromName: ctx.actor.name,
+            }),
+          );
+          return;
+        }
+        if (!input.reportId)
+          throw new UploadThingError({ code: "BAD_REQUEST", message: "Start from your case or a report." });
         said(
           await addEvidence(ctx, {
             fileIds,

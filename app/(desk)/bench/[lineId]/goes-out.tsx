@@ -42,17 +42,6 @@ export function GoesOut({ lineId, remedy, disposition, outcome, candidates }: Pr
   const sameBack = disposition === "send_back" || (disposition === "repair" && remedy === "repair");
   const fitting = candidates.filter((c) => c.fits);
   const others = candidates.filter((c) => !c.fits).slice(0, 6);
-  if (remedy === "credit" || remedy === "refund") {
-    return (
-      <form action={sendMoney} className="actform">
-        <h2>What goes out</h2>
-        <ErrorSummary title="Not settled" items={problems(moneyState)} />
-        <input type="hidden" name="lineId" value={lineId} />
-        <p>The remedy is a {remedy}. Nothing goes out; the sale ends, and the customer is told.</p>
-        <Button aria-disabled={moneyBusy}>Settle by {remedy}</Button>
-      </form>
-    );
-  }
   if (sameBack) {
     return (
       <form action={sendBackForm} className="actform">
@@ -67,6 +56,17 @@ export function GoesOut({ lineId, remedy, disposition, outcome, candidates }: Pr
         <Field label="Carrier" name="carrier" error={backState.fields?.carrier?.[0]} />
         <Field label="Tracking number" name="tracking" mono />
         <Button aria-disabled={backBusy}>Send it back</Button>
+      </form>
+    );
+  }
+  if (remedy === "credit" || remedy === "refund") {
+    return (
+      <form action={sendMoney} className="actform">
+        <h2>What goes out</h2>
+        <ErrorSummary title="Not settled" items={problems(moneyState)} />
+        <input type="hidden" name="lineId" value={lineId} />
+        <p>The remedy is a {remedy}. Nothing goes out; the sale ends, and the customer is told.</p>
+        <Button aria-disabled={moneyBusy}>Settle by {remedy}</Button>
       </form>
     );
   }

@@ -86,20 +86,24 @@ export default async function BenchTest({
   );
   const mayTest = may(ctx, "bench.test") || may(ctx, "bench.restock_second_nff");
   const closed = line.test?.closedAt != null;
+  const ahead =
+    line.remedy === "advance_replacement" &&
+    !line.replacement &&
+    (line.lineState === "open" || line.lineState === "received");
+  const goesOut = (closed && line.lineState === "tested") || ahead;
   const firstOpen =
     sheet.steps.find((s) => !line.readings.some((r) => r.step === s.step))?.step ?? sheet.steps.length;
   const at = Math.min(sheet.steps.length, Math.max(1, Number(query.at) || firstOpen));
   const wanted = { modelCode: line.modelCode, family: line.family, facts: line.facts };
-  const candidates =
-    closed && line.lineState === "tested"
-      ? (await stockOf(ctx, line.family)).map((u) => ({
-          serial: u.serial,
-          modelName: u.modelName,
-          place: u.place,
-          condition: u.condition,
-          ...fit(wanted, { modelCode: u.modelCode, family: u.family, facts: u.facts }),
-        }))
-      : [];
+  const candidates = goesOut
+    ? (await stockOf(ctx, line.family)).map((u) => ({
+        serial: u.serial,
+        modelName: u.modelName,
+        place: u.place,
+        condition: u.condition,
+        ...fit(wanted, { modelCode: u.modelCode, family: u.family, facts: u.facts }),
+      }))
+    : [];
   const nff = line.earlier.filter((e) => e.outcome === "no_fault_found").length;
   return (
     <main className="bench" id="main">
@@ -146,7 +150,9 @@ export default async function BenchTest({
               {line.readings.length} of {sheet.steps.length} run, every reading is kept
             </span>
           </div>
-          {!line.test ? (
+          {line.lineState === "open" ? (
+            <p className="q">It is not here yet: the dock takes it in first.</p>
+          ) : !line.test ? (
             mayTest ? (
               <ScanInForm lineId={line.lineId} serial={line.serial} />
             ) : (
@@ -222,7 +228,7 @@ export default async function BenchTest({
               </p>
             </div>
           ) : null}
-          {closed && line.lineState === "tested" && may(ctx, "dock.ship") ? (
+          {goesOut && may(ctx, "dock.ship") ? (
             <GoesOut
               lineId={line.lineId}
               remedy={line.remedy}

@@ -1,3 +1,4 @@
+import { serialInPath } from "@/lib/base/serial";
 import type { Metadata } from "next";
 import { notFound } from "next/navigation";
 import { requireStaff } from "@/app/_edge/ctx";
@@ -19,12 +20,12 @@ export async function generateMetadata({
 }: {
   params: Promise<{ serial: string }>;
 }): Promise<Metadata> {
-  return { title: decodeURIComponent((await params).serial) };
+  return { title: serialInPath((await params).serial) };
 }
 
 export default async function UnitPage({ params }: { params: Promise<{ serial: string }> }) {
   const ctx = await requireStaff();
-  const unit = await unitBySerial(ctx, decodeURIComponent((await params).serial));
+  const unit = await unitBySerial(ctx, serialInPath((await params).serial));
   if (!unit) notFound();
   const today = civilDayIn(ctx.now, env().MENDBAY_ZONE);
   const view = await coverFor(ctx, unit.unitId, today);

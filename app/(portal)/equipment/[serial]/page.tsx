@@ -1,3 +1,4 @@
+import { serialInPath } from "@/lib/base/serial";
 import type { Metadata } from "next";
 import { notFound } from "next/navigation";
 import { requireCustomer } from "@/app/_edge/ctx";
@@ -18,7 +19,7 @@ export const metadata: Metadata = { title: "What is covered" };
 
 export default async function Unit({ params }: { params: Promise<{ serial: string }> }) {
   const ctx = await requireCustomer();
-  const hit = await unitBySerial(ctx, decodeURIComponent((await params).serial));
+  const hit = await unitBySerial(ctx, serialInPath((await params).serial));
   if (!hit) notFound();
   const today = civilDayIn(ctx.now, env().MENDBAY_ZONE);
   const view = await coverFor(ctx, hit.unitId, today);

@@ -1,3 +1,4 @@
+import { serialInPath } from "@/lib/base/serial";
 import type { Metadata } from "next";
 import { notFound } from "next/navigation";
 import { requireCustomer } from "@/app/_edge/ctx";
@@ -26,7 +27,7 @@ const STAGE_WORDS: Record<string, [title: string, text: string]> = {
 
 export default async function Rma({ params }: { params: Promise<{ number: string }> }) {
   const ctx = await requireCustomer();
-  const rma = await rmaByNumber(ctx, decodeURIComponent((await params).number));
+  const rma = await rmaByNumber(ctx, serialInPath((await params).number));
   if (!rma) notFound();
   const at = STAGES.indexOf(rma.state as (typeof STAGES)[number]);
   const ended = ["withdrawn", "expired", "declined"].includes(rma.state);

@@ -10,14 +10,10 @@ export const POST = api<{ ref: string }, { number: string }>(
     if (!ticket) return refuse("not_found", "Not found.");
     if (version === undefined)
       return refuse("version_missing", "Send If-Match with the ETag you read the ticket with.");
-    if (version !== ticket.version)
-      return refuse("stale", "The ticket has changed since you read it. Read it again.", {
-        details: { version: ticket.version },
-      });
     const input = await body();
     if (!input.ok) return input;
     const text = (input.value as { text?: unknown } | null)?.text;
-    return addNote(ctx, { ticketId: ticket.id, text: typeof text === "string" ? text : "" });
+    return addNote(ctx, { ticketId: ticket.id, text: typeof text === "string" ? text : "" }, version);
   },
   { created: (v) => `#${v.ref}` },
 );

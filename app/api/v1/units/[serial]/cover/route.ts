@@ -1,3 +1,4 @@
+import { serialInPath } from "@/lib/base/serial";
 import { api } from "@/app/_edge/route";
 import { permit } from "@/lib/auth/rules";
 import { civilDayIn } from "@/lib/base/civil";
@@ -15,7 +16,7 @@ export const GET = api<CoverView, { serial: string }>(async (ctx, { params, quer
   if (!may.ok) return may;
   const ask = parse(UnitCoverAsk, query);
   if (!ask.ok) return ask;
-  const hit = await unitBySerial(ctx, decodeURIComponent(params.serial));
+  const hit = await unitBySerial(ctx, serialInPath(params.serial));
   const view = hit
     ? await coverFor(ctx, hit.unitId, ask.value.on ?? civilDayIn(ctx.now, env().MENDBAY_ZONE))
     : null;
