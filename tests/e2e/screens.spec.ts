@@ -136,7 +136,7 @@ test.describe("every screen can be used by everybody", () => {
     await page.goto((await hrefs(page, ".benchrow")).at(-1)!);
     await judge(page, "bench-out");
     await page.goto("/bench");
-    await page.goto((await hrefs(page, '.benchrow:has-text("not begun")'))[0]!);
+    await page.goto((await hrefs(page, 'section[aria-label="To test"] .benchrow:has-text("not begun")'))[0]!);
     await judge(page, "bench-in");
     await page.getByLabel("Scan the unit in").fill((await page.locator(".tag.big").textContent())!.trim());
     await page.getByRole("button", { name: "Begin the test" }).click();

@@ -69,7 +69,13 @@ export default async function Bench() {
                       <span className="m s">{r.rmaNumber}</span>
                       <span className="m s">{r.place ?? "no bay"}</span>
                       <span className="last">
-                        {r.outcome ? TEST_OUTCOME_WORDS[r.outcome] : r.testId ? "test running" : "not begun"}
+                        {r.lineState === "open"
+                          ? "replacement to be sent"
+                          : r.outcome
+                            ? TEST_OUTCOME_WORDS[r.outcome]
+                            : r.testId
+                              ? "test running"
+                              : "not begun"}
                       </span>
                     </Link>
                   </li>
