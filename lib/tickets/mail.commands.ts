@@ -198,21 +198,30 @@ export async function keepMailFiles(
       .for("update");
     if (!ticket) return refuse("not_found", "This ticket is not there.");
     if ((await filesOfMail(ctx, input)).kept) return ok<{ again: boolean }>({ again: true });
-    const added = await addEvidence(ctx, {
-      fileIds: input.fileIds,
-      ticketId: input.ticketId,
-      accountId: ticket.accountId,
-      source: "mail",
-      fromName: input.fromName,
-    });
-    if (!added.ok) return added;
-    const { evidenceIds } = added.value;
+    let evidenceIds: string[] = [];
+    if (input.fileIds.length > 0) {
+      const added = await addEvidence(ctx, {
+        fileIds: input.fileIds,
+        ticketId: input.ticketId,
+        accountId: ticket.accountId,
+        source: "mail",
+        fromName: input.fromName,
+      });
+      if (!added.ok) return added;
+      evidenceIds = added.value.evidenceIds;
+    }
     const n = evidenceIds.length;
-    const left = input.left.length > 0 ? `; too large to keep: ${input.left.join(", ")}` : "";
+    const came =
+      n === 0
+        ? "No file of the mail was kept"
+        : n === 1
+          ? "One file came with the mail"
+          : `${n} files came with the mail`;
+    const left = input.left.length > 0 ? `${n === 0 ? "" : "; not kept"}: ${input.left.join(" ")}` : "";
     const entry = await recordEntry(ctx, {
       ticketId: input.ticketId,
       kind: "evidence_added",
-      line: `${n === 1 ? "One file" : `${n} files`} came with the mail${left}`.slice(0, 400),
+      line: `${came}${left}`.slice(0, 400),
       data: { evidenceIds, source: "mail", messageId: input.messageRowId },
     });
     if (!entry.ok) return entry;

@@ -32,9 +32,10 @@ export async function handle(ctx: Ctx, payload: JobPayload<"mail.parse">): Promi
       accountId: already.accountId,
     });
     if (stored.ok) fileIds.push(stored.value.fileId);
-    else left.push(file.name);
+    else left.push(stored.refusal.message);
   }
-  if (fileIds.length === 0) return;
+  // Also when none was kept: the record says that files came, and why they are not there.
+  if (fileIds.length === 0 && left.length === 0) return;
   const from = read.ok ? read.mail.from[0] : undefined;
   must(
     await keepMailFiles(ctx, {
