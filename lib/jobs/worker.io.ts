@@ -28,6 +28,12 @@ const logger = new Logger(() => (level, message, meta) => {
   else log.debug(message);
 });
 
+/**
+ * The library writes how a job went without waiting for it; only what it batches does it see written
+ * before it says that it has ended. Without a delay nothing stays locked longer for that.
+ */
+const preset = { worker: { completeJobBatchDelay: 0, failJobBatchDelay: 0 } };
+
 export type Worker = { stop(): Promise<void>; gone: Promise<void> };
 
 /** Starts taking jobs. Stopping waits for those that run. */
@@ -45,13 +51,14 @@ export async function startWorker(more: { concurrency?: number } = {}): Promise<
         : [],
     ),
     logger,
+    preset,
   });
   return { stop: () => runner.stop(), gone: runner.promise };
 }
 
 /** Runs every job that is due now, then returns: for tests and the demo. */
 export async function runDueJobs(): Promise<void> {
-  await runOnce({ pgPool: pool(), taskList: tasks(), noHandleSignals: true, logger });
+  await runOnce({ pgPool: pool(), taskList: tasks(), noHandleSignals: true, logger, preset });
 }
 
 if (process.argv[1] === fileURLToPath(import.meta.url)) {

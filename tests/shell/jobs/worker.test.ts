@@ -75,6 +75,27 @@ test("a broken handler stops its own jobs and no other", async () => {
   expect((await waiting()).map((j) => [j.task, j.attempts])).toEqual([["mail.parse", 1]]);
 });
 
+test("how a job went is written before the run is over, however slow the database", async () => {
+  // The database itself is slow here, so that a run which does not wait is always caught.
+  await rawDb().execute(sql`
+    create function slow_write() returns trigger language plpgsql as
+      $$ begin perform pg_sleep(0.3); return coalesce(new, old); end $$`);
+  await rawDb().execute(sql`
+    create trigger slow_write before update or delete on graphile_worker._private_jobs
+      for each row execute function slow_write()`);
+  try {
+    await put(6);
+    await runDueJobs();
+    expect(await waiting()).toEqual([]);
+    seen.fail = true;
+    await put(7);
+    await runDueJobs();
+    expect((await waiting()).map((j) => j.last_error)).toEqual(["the other side is away"]);
+  } finally {
+    await rawDb().execute(sql`drop function slow_write() cascade`);
+  }
+});
+
 test("a job for later is left alone", async () => {
   await put(5, new Date("2999-01-01T00:00:00Z"));
   await runDueJobs();
