@@ -213,6 +213,7 @@ export function Station({ expected, aside }: { expected: Expected[]; aside: Asid
 
   return (
     <main className="dock" id="main">
+      <h1 className="vh">Dock</h1>
       <form
         className="bigscan notch"
         onSubmit={(e) => {
@@ -238,6 +239,7 @@ export function Station({ expected, aside }: { expected: Expected[]; aside: Asid
           autoCapitalize="characters"
           spellCheck={false}
           placeholder={scanned || "scan"}
+          className={scanned ? "last" : undefined}
           enterKeyHint="go"
         />
         <span className="ph" role="status" aria-live="polite">

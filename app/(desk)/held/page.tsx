@@ -35,7 +35,7 @@ export default async function Held({
       </div>
       {done ? <p role="status">{done}</p> : null}
       {held.length === 0 ? (
-        <Empty title="No mail is held.">
+        <Empty title="Nothing waits for a look.">
           Mail that may not join a record without a person’s look waits here, with its reason.
         </Empty>
       ) : (

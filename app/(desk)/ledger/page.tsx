@@ -43,7 +43,7 @@ export default async function Ledger({
           </ButtonLink>
         ) : null}
       </div>
-      <form className="deskfind" role="search" method="get">
+      <form className="deskfind" role="search" aria-label="The ledger" method="get">
         <label htmlFor="ledger-q">Serial, order or customer</label>
         <input id="ledger-q" name="q" className="in m" defaultValue={q} autoComplete="off" />
         <Button kind="line">Find</Button>

@@ -53,8 +53,10 @@ export function GoesOut({ lineId, remedy, disposition, outcome, candidates }: Pr
             ? "Repaired, the same unit goes back."
             : "The same unit goes back to the customer."}
         </p>
-        <Field label="Carrier" name="carrier" error={backState.fields?.carrier?.[0]} />
-        <Field label="Tracking number" name="tracking" mono />
+        <div className="pair">
+          <Field label="Carrier" name="carrier" error={backState.fields?.carrier?.[0]} />
+          <Field label="Tracking number" name="tracking" mono />
+        </div>
         <Button aria-disabled={backBusy}>Send it back</Button>
       </form>
     );
@@ -81,7 +83,10 @@ export function GoesOut({ lineId, remedy, disposition, outcome, candidates }: Pr
             <li key={c.serial}>
               <Tag serial={c.serial} part />
               <span>
-                {c.modelName}, {c.condition}, bay <span className="m">{c.place ?? "none"}</span>
+                {c.modelName}, {c.condition},{" "}
+                <span className="nw">
+                  bay <span className="m">{c.place ?? "none"}</span>
+                </span>
                 {c.same ? "" : ", better"}
                 {c.warnings.map((w) => (
                   <span className="s block" key={w}>
@@ -124,13 +129,15 @@ export function GoesOut({ lineId, remedy, disposition, outcome, candidates }: Pr
           detail={state.fields.acceptWarnings.join(" ")}
         />
       ) : null}
-      <Field
-        label="Carrier"
-        name="carrier"
-        error={state.fields?.carrier?.[0]}
-        defaultValue={kept("carrier")}
-      />
-      <Field label="Tracking number" name="tracking" mono defaultValue={kept("tracking")} />
+      <div className="pair">
+        <Field
+          label="Carrier"
+          name="carrier"
+          error={state.fields?.carrier?.[0]}
+          defaultValue={kept("carrier")}
+        />
+        <Field label="Tracking number" name="tracking" mono defaultValue={kept("tracking")} />
+      </div>
       <Button aria-disabled={busy}>{busy ? "Shipping" : "Ship it and tell the customer"}</Button>
     </form>
   );

@@ -107,6 +107,7 @@ export default async function BenchTest({
   const nff = line.earlier.filter((e) => e.outcome === "no_fault_found").length;
   return (
     <main className="bench" id="main">
+      <h1 className="vh">Bench test of {line.serial}</h1>
       <div className="thead">
         <div>
           <div className="id">

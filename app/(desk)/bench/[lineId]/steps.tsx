@@ -21,6 +21,8 @@ type Step = {
 };
 type Props = { lineId: string; testId: string; at: number; photos: number; steps: Step[] };
 
+const TRI = { pass: "p", fail: "f", not_run: undefined } as const;
+
 function Mark({ verdict }: { verdict: "pass" | "fail" | "not_run" }) {
   if (verdict === "not_run") return <span className="q">not run</span>;
   return (
@@ -32,6 +34,10 @@ function Mark({ verdict }: { verdict: "pass" | "fail" | "not_run" }) {
     </span>
   );
 }
+
+/** A number is read with its unit; words stand for themselves. */
+const withUnit = (value: string, unit: string) =>
+  unit && /^-?\d+([.,]\d+)?$/.test(value) ? `${value} ${unit}` : value;
 
 /** The checklist: what was read stays, the one step in hand is open. */
 export function Steps({ lineId, testId, at, photos, steps }: Props) {
@@ -55,8 +61,8 @@ export function Steps({ lineId, testId, at, photos, steps }: Props) {
                 {s.reading?.note ? <span className="q s block">{s.reading.note}</span> : null}
               </span>
               <span className="meas">
-                {s.reading ? s.reading.value || "seen" : s.limits}
-                {s.reading ? <small>{s.limits}</small> : null}
+                {s.reading ? withUnit(s.reading.value, s.unit) || "seen" : s.limits}
+                {s.reading && s.limits !== s.unit ? <small>{s.limits}</small> : null}
               </span>
               {s.reading ? <Mark verdict={s.reading.verdict} /> : <span className="q">not yet run</span>}
             </>
@@ -112,38 +118,38 @@ function StepForm({
             />
           </div>
         ) : null}
+        <div className="field">
+          <label htmlFor="f-note">Note</label>
+          <input id="f-note" name="note" className="in" defaultValue={r?.note ?? ""} autoComplete="off" />
+        </div>
+      </div>
+      <div className="stepfoot">
         {step.judged ? null : (
           <fieldset className="tri">
             <legend className="vh">Verdict</legend>
             {(["pass", "fail", "not_run"] as const).map((v) => (
-              <label key={v}>
+              <label key={v} className={TRI[v]}>
                 <input type="radio" name="verdict" value={v} defaultChecked={r?.verdict === v} />
                 <span>{v.replace("_", " ")}</span>
               </label>
             ))}
           </fieldset>
         )}
-        <div className="field">
-          <label htmlFor="f-note">Note</label>
-          <input id="f-note" name="note" className="in" defaultValue={r?.note ?? ""} autoComplete="off" />
-        </div>
-      </div>
-      {step.photo ? (
-        <Uploader
-          compact
-          endpoint="photo"
-          input={{ subject: "bench_test", subjectId: testId, slot: "finding" }}
-          label="Photo of the finding"
-          hint={`${photos} kept`}
-          accept="image/*"
-          onDone={() => router.refresh()}
-        />
-      ) : null}
-      <p className="pact">
+        {step.photo ? (
+          <Uploader
+            compact
+            endpoint="photo"
+            input={{ subject: "bench_test", subjectId: testId, slot: "finding" }}
+            label="Photo of the finding"
+            hint={`${photos} kept`}
+            accept="image/*"
+            onDone={() => router.refresh()}
+          />
+        ) : null}
         <Button aria-disabled={busy}>
           {step.step < last ? `Keep, go to step ${step.step + 1}` : "Keep the last step"}
         </Button>
-      </p>
+      </div>
     </form>
   );
 }

@@ -78,29 +78,33 @@ export default async function UnitPage({ params }: { params: Promise<{ serial: s
               It was never sold by itself{unit.systemSerial ? "; it went out in its system" : ""}.
             </p>
           ) : null}
-          <ul className="plist">
-            {sales.map((s) => (
-              <li key={s.saleLineId}>
-                <span className="m">{s.orderNumber}</span>, {s.accountName}, {s.condition}, shipped{" "}
-                {showDay(s.shippedOn)}
-                {s.deliveredOn ? `, delivered ${showDay(s.deliveredOn)}` : ", no proof of delivery"}
-                {s.endedOn ? `; ended ${showDay(s.endedOn)}: ${s.endedReason ?? ""}` : ""}
-              </li>
-            ))}
-          </ul>
+          {sales.length > 0 ? (
+            <ul className="plist">
+              {sales.map((s) => (
+                <li key={s.saleLineId}>
+                  <span className="m">{s.orderNumber}</span>, {s.accountName}, {s.condition}, shipped{" "}
+                  {showDay(s.shippedOn)}
+                  {s.deliveredOn ? `, delivered ${showDay(s.deliveredOn)}` : ", no proof of delivery"}
+                  {s.endedOn ? `; ended ${showDay(s.endedOn)}: ${s.endedReason ?? ""}` : ""}
+                </li>
+              ))}
+            </ul>
+          ) : null}
           <div className="sec">
             <h2>Tickets</h2>
           </div>
           {tickets.length === 0 ? <p className="q">No claim was ever made about it.</p> : null}
-          <ul className="plist">
-            {tickets.map((t) => (
-              <li key={t.href}>
-                <a href={t.href}>{t.label}</a>, {t.detail}
-              </li>
-            ))}
-          </ul>
+          {tickets.length > 0 ? (
+            <ul className="plist">
+              {tickets.map((t) => (
+                <li key={t.href}>
+                  <a href={t.href}>{t.label}</a>, {t.detail}
+                </li>
+              ))}
+            </ul>
+          ) : null}
           {view ? (
-            <p className="q">
+            <p className="q mt-4">
               Sold under{" "}
               <a href={`/terms/${view.termsVersionId}`}>
                 {view.termsName}, issue {view.termsIssue}

@@ -80,14 +80,16 @@ export default async function ImportPage({
       {recent.length === 0 ? (
         <Empty title="Nothing was imported yet.">The first file fills the ledger.</Empty>
       ) : null}
-      <ul className="plist">
-        {recent.map((i) => (
-          <li key={i.id}>
-            <a href={`/ledger/import/${i.id}`}>{i.fileName}</a>, {i.rowsTotal} rows, {STATE_WORDS[i.state]},{" "}
-            {showInstant(i.createdAt, env().MENDBAY_ZONE)}
-          </li>
-        ))}
-      </ul>
+      {recent.length > 0 ? (
+        <ul className="plist">
+          {recent.map((i) => (
+            <li key={i.id}>
+              <a href={`/ledger/import/${i.id}`}>{i.fileName}</a>, {i.rowsTotal} rows, {STATE_WORDS[i.state]},{" "}
+              {showInstant(i.createdAt, env().MENDBAY_ZONE)}
+            </li>
+          ))}
+        </ul>
+      ) : null}
     </main>
   );
 }
