@@ -4,7 +4,7 @@ import { requireStaff } from "@/app/_edge/ctx";
 import { DueClock } from "@/components/tickets/due";
 import { CautionStrip, type CautionItem } from "@/components/ui/caution-strip";
 import { Tag } from "@/components/ui/tag";
-import { showInstant } from "@/lib/base/show";
+import { showDay, showInstant } from "@/lib/base/show";
 import { benchLine, photosOf } from "@/lib/dock/queries";
 import { DISPOSITIONS_FOR } from "@/lib/dock/rules";
 import { TEST_OUTCOME_WORDS } from "@/lib/dock/schema";
@@ -120,11 +120,16 @@ export default async function BenchTest({
           </div>
         </div>
         <div className="clock">
-          {closed ? "Tested" : "Bench result due"}
-          <br />
-          <span className="clockline">
-            <DueClock state={clock.state} share={clock.share} words={clock.words} late={clock.late} />
-          </span>
+          {line.lineState === "settled" ? "Settled" : closed ? "Tested" : "Bench result due"}
+          {/* Nothing is due any more once the line is settled. */}
+          {line.lineState === "settled" ? null : (
+            <>
+              <br />
+              <span className="clockline">
+                <DueClock state={clock.state} share={clock.share} words={clock.words} late={clock.late} />
+              </span>
+            </>
+          )}
         </div>
       </div>
       <CautionStrip items={cautions(line.family, line.weightKg)} />
@@ -246,7 +251,9 @@ export default async function BenchTest({
               <div>
                 <div className="t">{line.replacement.serialOut} went out.</div>
                 <div className="d">
-                  {line.replacement.lastCoveredOn ? `Covered to ${line.replacement.lastCoveredOn}. ` : ""}
+                  {line.replacement.lastCoveredOn
+                    ? `Covered to ${showDay(line.replacement.lastCoveredOn)}. `
+                    : ""}
                   {ticket?.closedAt
                     ? "The RMA is settled and the customer is told."
                     : "Other lines are still open."}
