@@ -178,7 +178,12 @@ test("the main job, end to end: from an imported shipment to a settled RMA and a
 
   await test.step("4. an agent finds the first ticket by the scan line, ties the unit, decides, authorizes and answers", async () => {
     const page = await staff(browser, url, STAFF.agent);
-    await page.keyboard.press("/");
+    // The key works once the page's script does: pressed until the field has it, never into the field.
+    const scanLine = page.locator("form.scan input");
+    await expect(async () => {
+      if (!(await scanLine.evaluate((e) => e === document.activeElement))) await page.keyboard.press("/");
+      await expect(scanLine).toBeFocused({ timeout: 500 });
+    }).toPass();
     await page.keyboard.type(` ${c.one.drive.toLowerCase().replaceAll("-", " ")}`);
     await page.keyboard.press("Enter");
     await page.waitForURL(new RegExp(`/desk/${ticket}`));
