@@ -1,5 +1,6 @@
 import { sql } from "drizzle-orm";
 import {
+  boolean,
   check,
   date,
   index,
@@ -14,9 +15,15 @@ import {
 import {
   CLAUSE_KINDS,
   DAY_RULES,
+  FREIGHT_RULES,
+  GOODWILL_STATES,
+  LAW_REGIONS,
   OUTCOMES,
+  PREVIEW_STATES,
   REMEDIES,
+  REPLACED_RULES,
   START_BASES,
+  TRANSFER_RULES,
   WINDOW_KINDS,
 } from "../../lib/coverage/schema";
 import { id, instant } from "./columns";
@@ -29,6 +36,12 @@ export const dayRule = pgEnum("day_rule", DAY_RULES);
 export const remedy = pgEnum("remedy", REMEDIES);
 export const outcome = pgEnum("outcome", OUTCOMES);
 export const windowKind = pgEnum("window_kind", WINDOW_KINDS);
+export const replacedRule = pgEnum("replaced_rule", REPLACED_RULES);
+export const transferRule = pgEnum("transfer_rule", TRANSFER_RULES);
+export const freightRule = pgEnum("freight_rule", FREIGHT_RULES);
+export const goodwillState = pgEnum("goodwill_state", GOODWILL_STATES);
+export const previewState = pgEnum("preview_state", PREVIEW_STATES);
+export const lawRegion = pgEnum("law_region", LAW_REGIONS);
 
 export const terms = pgTable(
   "terms",
@@ -48,9 +61,17 @@ export const termsVersions = pgTable(
     effectiveOn: date("effective_on").notNull(),
     publishedAt: instant("published_at"),
     note: text("note").notNull().default(""),
+    /** Counts the changes of a draft: who saves over another's change is told. */
+    version: integer("version").notNull().default(1),
+    madeByName: text("made_by_name").notNull().default(""),
     createdAt: instant("created_at").notNull(),
   },
-  (t) => [uniqueIndex("terms_issue_once").on(t.termsId, t.issue)],
+  (t) => [
+    uniqueIndex("terms_issue_once").on(t.termsId, t.issue),
+    uniqueIndex("terms_one_draft")
+      .on(t.termsId)
+      .where(sql`published_at is null`),
+  ],
 );
 
 export const clauses = pgTable(
@@ -74,8 +95,15 @@ export const clauses = pgTable(
     /** Delivery counts as ship day plus this many days when there is no proof of delivery. */
     deliveryGraceDays: integer("delivery_grace_days").notNull().default(0),
     dayRule: dayRule("day_rule").notNull().default("event_day_excluded"),
+    rolls: boolean("rolls").notNull().default(true),
+    clockStops: boolean("clock_stops").notNull().default(true),
+    replacedRule: replacedRule("replaced_rule").notNull().default("later_of_both"),
+    transferRule: transferRule("transfer_rule"),
     remedies: remedy("remedies").array().notNull().default([]),
     dueBackDays: integer("due_back_days"),
+    holdCents: integer("hold_cents"),
+    freight: freightRule("freight"),
+    responseHours: integer("response_hours"),
     enduranceHours: integer("endurance_hours"),
     enduranceTb: integer("endurance_tb"),
     /** For an exclusion: which fault it is about, and the evidence that must show it. */
@@ -153,4 +181,96 @@ export const coverageDecisions = pgTable(
     madeAt: instant("made_at").notNull(),
   },
   (t) => [index("decision_of_ticket").on(t.ticketId, t.madeAt), index("decision_of_unit").on(t.unitId)],
+);
+
+/** What a draft would do to what was sold, reckoned by the worker in steps that can be stopped. */
+export const termsPreviews = pgTable(
+  "terms_preview",
+  {
+    id: id(),
+    termsVersionId: uuid("terms_version_id")
+      .notNull()
+      .references(() => termsVersions.id, { onDelete: "cascade" }),
+    /** The draft's version that was reckoned: a later change makes the answer an old one. */
+    ofVersion: integer("of_version").notNull(),
+    state: previewState("state").notNull(),
+    total: integer("total").notNull(),
+    done: integer("done").notNull().default(0),
+    /** Where the next step goes on. */
+    afterId: uuid("after_id"),
+    answer: jsonb("answer").notNull(),
+    error: text("error"),
+    createdByName: text("created_by_name").notNull(),
+    createdAt: instant("created_at").notNull(),
+    finishedAt: instant("finished_at"),
+  },
+  (t) => [index("preview_of_version").on(t.termsVersionId, t.createdAt)],
+);
+
+/** Cover that a manager grants, or not, where the decision was no. Asked by one person, granted by another. */
+export const goodwills = pgTable(
+  "goodwill",
+  {
+    id: id(),
+    ticketId: uuid("ticket_id")
+      .notNull()
+      .references(() => tickets.id),
+    ticketUnitId: uuid("ticket_unit_id")
+      .notNull()
+      .references(() => ticketUnits.id),
+    accountId: uuid("account_id").references(() => accounts.id),
+    unitId: uuid("unit_id")
+      .notNull()
+      .references(() => units.id),
+    decisionId: uuid("decision_id")
+      .notNull()
+      .references(() => coverageDecisions.id),
+    state: goodwillState("state").notNull(),
+    askedBy: uuid("asked_by").notNull(),
+    askedByName: text("asked_by_name").notNull(),
+    askedAt: instant("asked_at").notNull(),
+    reason: text("reason").notNull(),
+    wantedRemedy: remedy("wanted_remedy").notNull(),
+    answeredBy: uuid("answered_by"),
+    answeredByName: text("answered_by_name"),
+    answeredAt: instant("answered_at"),
+    answer: text("answer").notNull().default(""),
+    remedy: remedy("remedy"),
+    /** The most it may cost us. */
+    limitCents: integer("limit_cents"),
+  },
+  (t) => [
+    index("goodwill_of_ticket").on(t.ticketId),
+    index("goodwill_by_state").on(t.state, t.askedAt),
+    uniqueIndex("goodwill_one_open")
+      .on(t.ticketUnitId)
+      .where(sql`state = 'asked'`),
+    check(
+      "goodwill_nobody_grants_their_own",
+      sql`${t.answeredBy} is null or ${t.answeredBy} <> ${t.askedBy}`,
+    ),
+    check("goodwill_answered", sql`(${t.state} = 'asked') = (${t.answeredBy} is null)`),
+    check(
+      "goodwill_granted_with",
+      sql`${t.state} <> 'granted' or (${t.remedy} is not null and ${t.limitCents} is not null)`,
+    ),
+  ],
+);
+
+/** A notice of rights by law, by region and buyer, from a day on. It warns beside the terms; it decides nothing. */
+export const lawNotices = pgTable(
+  "law_notice",
+  {
+    id: id(),
+    region: lawRegion("region").notNull(),
+    /** For consumers (and buyers we do not know), or for businesses. */
+    forConsumers: boolean("for_consumers").notNull(),
+    effectiveOn: date("effective_on").notNull(),
+    title: text("title").notNull(),
+    words: text("words").notNull(),
+    source: text("source").notNull(),
+    madeByName: text("made_by_name").notNull(),
+    createdAt: instant("created_at").notNull(),
+  },
+  (t) => [uniqueIndex("law_notice_once").on(t.region, t.forConsumers, t.effectiveOn)],
 );

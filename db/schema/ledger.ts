@@ -196,6 +196,10 @@ export const saleLines = pgTable(
     invoicedOn: date("invoiced_on"),
     shippedOn: date("shipped_on").notNull(),
     deliveredOn: date("delivered_on"),
+    /** Set up at the customer's, where terms count from there. */
+    installedOn: date("installed_on"),
+    /** Days on which a whole unit took over this sale from the one before it. */
+    swaps: date("swaps").array().notNull().default([]),
     /** No foreign key here to keep modules apart in the schema; the migration adds it. */
     termsVersionId: uuid("terms_version_id").notNull(),
     condition: condition("condition").notNull(),
@@ -239,6 +243,12 @@ export const installations = pgTable(
     removedReason: text("removed_reason"),
     /** The installation whose place it took. */
     replacesId: uuid("replaces_id"),
+    /** Every swap of this place under the sale up to this part, in order: what its floor runs from. */
+    swaps: date("swaps").array().notNull().default([]),
+    /** The sale whose terms cover it, where that is not the one it stands under: a part moved here. */
+    coverSaleLineId: uuid("cover_sale_line_id").references(() => saleLines.id),
+    /** The day we were told in writing that it came here from another customer. */
+    noticedOn: date("noticed_on"),
     createdAt: instant("created_at").notNull(),
   },
   (t) => [
@@ -253,6 +263,31 @@ export const installations = pgTable(
     index("installation_of_sale").on(t.saleLineId),
     check("installation_days", sql`${t.toOn} is null or ${t.toOn} >= ${t.fromOn}`),
     check("installation_not_self", sql`${t.parentUnitId} <> ${t.unitId}`),
+  ],
+);
+
+/** A sold unit was given on to another company: who held it until when, and whether we were told. */
+export const saleTransfers = pgTable(
+  "sale_transfer",
+  {
+    id: id(),
+    saleLineId: uuid("sale_line_id")
+      .notNull()
+      .references(() => saleLines.id),
+    fromAccountId: uuid("from_account_id")
+      .notNull()
+      .references(() => accounts.id),
+    toAccountId: uuid("to_account_id")
+      .notNull()
+      .references(() => accounts.id),
+    onDay: date("on_day").notNull(),
+    /** The day of the written notice; none when we were not told. */
+    noticedOn: date("noticed_on"),
+    createdAt: instant("created_at").notNull(),
+  },
+  (t) => [
+    index("transfer_of_sale").on(t.saleLineId, t.onDay),
+    check("transfer_to_another", sql`${t.fromAccountId} <> ${t.toAccountId}`),
   ],
 );
 

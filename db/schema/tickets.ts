@@ -88,6 +88,8 @@ export const ticketUnits = pgTable(
     faultWords: text("fault_words").notNull().default(""),
     /** Guided answers of the portal: question to answer. */
     answers: jsonb("answers").$type<Record<string, string>>().notNull().default({}),
+    /** The day of the receipt that first named this unit; none: the ticket's own. */
+    claimOn: date("claim_on"),
     state: tieState("state").notNull(),
     createdAt: instant("created_at").notNull(),
   },

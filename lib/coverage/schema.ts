@@ -32,6 +32,68 @@ export type Outcome = (typeof OUTCOMES)[number];
 export const WINDOW_KINDS = ["doa", "cover"] as const;
 export type WindowKind = (typeof WINDOW_KINDS)[number];
 
+/** How long cover of a part we fitted lasts. */
+export const REPLACED_RULES = ["later_of_both", "remainder", "floor"] as const;
+export type ReplacedRule = (typeof REPLACED_RULES)[number];
+export const REPLACED_WORDS: Record<ReplacedRule, string> = {
+  later_of_both: "the rest of the first cover or the floor, whichever is later",
+  remainder: "the rest of the first cover only",
+  floor: "the floor only",
+};
+
+/** What becomes of cover when a unit is given on to another company. */
+export const TRANSFER_RULES = ["first_buyer", "with_notice", "follows_serial"] as const;
+export type TransferRule = (typeof TRANSFER_RULES)[number];
+export const TRANSFER_WORDS: Record<TransferRule, string> = {
+  first_buyer: "cover is the first buyer's and ends when the unit is given on",
+  with_notice: "cover goes along when we are told in writing",
+  follows_serial: "cover follows the serial, whoever holds it",
+};
+
+export const FREIGHT_RULES = ["seller_both", "customer_in", "customer_both"] as const;
+export type FreightRule = (typeof FREIGHT_RULES)[number];
+export const FREIGHT_WORDS: Record<FreightRule, string> = {
+  seller_both: "we pay the freight both ways",
+  customer_in: "the customer pays the way in, we pay the way out",
+  customer_both: "the customer pays both ways",
+};
+
+/** What a clause may leave out, once its evidence shows it. Common practice, no source. */
+export const EXCLUSIONS = [
+  "physical_damage",
+  "bent_contacts",
+  "liquid",
+  "unauthorized_change",
+  "altered_label",
+] as const;
+export type Exclusion = (typeof EXCLUSIONS)[number];
+export const EXCLUSION_WORDS: Record<Exclusion, string> = {
+  physical_damage: "physical damage",
+  bent_contacts: "bent socket contacts",
+  liquid: "liquid inside",
+  unauthorized_change: "an unauthorized change",
+  altered_label: "an altered label",
+};
+
+export const CLAUSE_FEES = ["no_fault_found", "restocking", "diagnostic", "not_returned"] as const;
+export type ClauseFee = (typeof CLAUSE_FEES)[number];
+export const CLAUSE_FEE_WORDS: Record<ClauseFee, string> = {
+  no_fault_found: "no fault found",
+  restocking: "restocking",
+  diagnostic: "diagnostic",
+  not_returned: "old part not returned",
+};
+
+export const GOODWILL_STATES = ["asked", "granted", "declined"] as const;
+export type GoodwillState = (typeof GOODWILL_STATES)[number];
+
+export const PREVIEW_STATES = ["running", "done", "cancelled", "failed"] as const;
+export type PreviewState = (typeof PREVIEW_STATES)[number];
+
+/** Bodies of law whose notice stands beside the terms. A country outside of them gets the general one. */
+export const LAW_REGIONS = ["EU", "UK", "US", "AU", "other"] as const;
+export type LawRegion = (typeof LAW_REGIONS)[number];
+
 export const FAULT_CLASSES = [
   "no_power",
   "not_detected",
@@ -92,11 +154,25 @@ export type ClauseFact = {
   condition: string | null;
   period: string | null;
   startBasis: StartBasis | null;
+  /** Added to the ship day where the day of the start basis is not known. */
   deliveryGraceDays: number;
   dayRule: DayRule;
+  /** DOA: a last day that is no working day of the site moves to the next that is. */
+  rolls: boolean;
+  /** Cover: days of a pause are added to its end. */
+  clockStops: boolean;
+  replacedRule: ReplacedRule;
+  transferRule: TransferRule | null;
   remedies: Remedy[];
   dueBackDays: number | null;
+  /** What is held for an advance replacement until the old part is back. */
+  holdCents: number | null;
+  freight: FreightRule | null;
+  /** Working hours within which we answer. */
+  responseHours: number | null;
   enduranceHours: number | null;
+  /** Terabytes written, 10^12 bytes each. */
+  enduranceTb: number | null;
   exclusion: string | null;
   evidence: string[];
   feeKind: string | null;

@@ -58,7 +58,7 @@ export const WHEREABOUTS = [
 ] as const;
 export type Whereabouts = (typeof WHEREABOUTS)[number];
 
-export const INSTALLATION_SOURCES = ["as_built", "swap"] as const;
+export const INSTALLATION_SOURCES = ["as_built", "swap", "moved"] as const;
 
 export const IMPORT_STATES = ["previewed", "applying", "applied", "failed", "cancelled"] as const;
 export type ImportState = (typeof IMPORT_STATES)[number];

@@ -14,6 +14,9 @@ const LETTERS: Record<EntryKind, EntryLetter> = {
   note: "N",
   closed: "N",
   decision: "C",
+  goodwill_asked: "C",
+  goodwill_granted: "C",
+  goodwill_declined: "C",
   rma_requested: "R",
   rma_authorized: "R",
   rma_declined: "R",
@@ -30,7 +33,15 @@ const LETTERS: Record<EntryKind, EntryLetter> = {
 export const letterOf = (kind: EntryKind): EntryLetter => LETTERS[kind];
 
 /** What a customer does not see unless the entry says otherwise. */
-const INNER: readonly EntryKind[] = ["note", "unit_tied", "mail_noted", "dock_stopped", "bench_started"];
+const INNER: readonly EntryKind[] = [
+  "note",
+  "unit_tied",
+  "mail_noted",
+  "dock_stopped",
+  "bench_started",
+  "goodwill_asked",
+  "goodwill_declined",
+];
 export const customerSeesByDefault = (kind: EntryKind): boolean => !INNER.includes(kind);
 
 /** What of a ticket is derived from its record. */
@@ -91,6 +102,12 @@ function moveAfter(state: TicketState, entry: EntryFact): Move {
           ? { on: "customer", for: "choose what happens" }
           : { on: "customer", for: "choose a remedy" }
         : { on: "us", for: "tell the customer" };
+    case "goodwill_asked":
+      return { on: "us", for: "grant or decline goodwill" };
+    case "goodwill_granted":
+      return { on: "us", for: "authorize what was granted" };
+    case "goodwill_declined":
+      return { on: "us", for: "tell the customer" };
     case "rma_requested":
       return { on: "us", for: "authorize" };
     case "rma_authorized":

@@ -39,6 +39,9 @@ export const ENTRY_KINDS = [
   "bench_closed", // B
   "replacement_shipped", // S
   "closed", // N
+  "goodwill_asked", // C: an agent asks a manager; for us only
+  "goodwill_granted", // C
+  "goodwill_declined", // C: for us only, until a letter tells the customer
 ] as const;
 export type EntryKind = (typeof ENTRY_KINDS)[number];
 
