@@ -247,7 +247,8 @@ export const installations = pgTable(
     swaps: date("swaps").array().notNull().default([]),
     /** The sale whose terms cover it, where that is not the one it stands under: a part moved here. */
     coverSaleLineId: uuid("cover_sale_line_id").references(() => saleLines.id),
-    /** The day we were told in writing that it came here from another customer. */
+    /** The day it came here from another customer, and the day we were told of it in writing. */
+    givenOn: date("given_on"),
     noticedOn: date("noticed_on"),
     createdAt: instant("created_at").notNull(),
   },

@@ -1,8 +1,8 @@
-import { and, desc, eq, inArray } from "drizzle-orm";
+import { and, desc, eq, inArray, lte, ne } from "drizzle-orm";
 import { z } from "zod";
 import { transact } from "@/db/client";
 import { clauses, coverageDecisions, coverWindows, terms, termsVersions } from "@/db/schema/coverage";
-import { coverPauses, installations, models, saleLines, units } from "@/db/schema/ledger";
+import { tickets } from "@/db/schema/tickets";
 import { audit } from "@/lib/audit/commands";
 import { permit } from "@/lib/auth/rules";
 import { parse } from "@/lib/base/parse";
@@ -12,15 +12,19 @@ import { showDay } from "@/lib/base/show";
 import { actorName, type Ctx, type TxCtx } from "@/lib/ctx";
 import { defaultSite } from "@/lib/ledger/queries";
 import { CONDITIONS, FAMILIES } from "@/lib/ledger/schema";
-import { saleCase } from "./queries";
+import { factsIn, saleCase, saleFactsFor } from "./queries";
 import { decide, ENGINE, inherited } from "./rules";
 import {
+  CLAUSE_FEES,
   CLAUSE_KINDS,
   DAY_RULES,
+  EXCLUSIONS,
   FAULT_CLASSES,
+  FREIGHT_RULES,
   REMEDIES,
+  REPLACED_RULES,
   START_BASES,
-  type ClauseFact,
+  TRANSFER_RULES,
   type DecideInput,
   type Decision,
 } from "./schema";
@@ -41,12 +45,20 @@ const ClauseInput = z.object({
   startBasis: z.enum(START_BASES).nullish(),
   deliveryGraceDays: z.number().int().min(0).max(60).default(0),
   dayRule: z.enum(DAY_RULES).default("event_day_excluded"),
+  rolls: z.boolean().default(true),
+  clockStops: z.boolean().default(true),
+  replacedRule: z.enum(REPLACED_RULES).default("later_of_both"),
+  transferRule: z.enum(TRANSFER_RULES).nullish(),
   remedies: z.array(z.enum(REMEDIES)).default([]),
   dueBackDays: z.number().int().min(1).max(120).nullish(),
+  holdCents: z.number().int().min(0).nullish(),
+  freight: z.enum(FREIGHT_RULES).nullish(),
+  responseHours: z.number().int().min(1).max(400).nullish(),
   enduranceHours: z.number().int().positive().nullish(),
-  exclusion: z.string().nullish(),
+  enduranceTb: z.number().int().positive().nullish(),
+  exclusion: z.enum(EXCLUSIONS).nullish(),
   evidence: z.array(z.string()).default([]),
-  feeKind: z.string().nullish(),
+  feeKind: z.enum(CLAUSE_FEES).nullish(),
   feeCents: z.number().int().min(0).nullish(),
   words: z.string().default(""),
 });
@@ -118,9 +130,11 @@ const StoreDecision = z.object({
   what: z.string().min(1),
   evidence: z.object({ photos: z.number().int().min(0), logs: z.number().int().min(0) }),
   established: z.array(z.string()).default([]),
+  ruledOut: z.array(z.string()).default([]),
   readings: z
     .object({
       powerOnHours: z.number().optional(),
+      bytesWritten: z.number().optional(),
       serial: z.string().optional(),
       serialMatches: z.boolean().optional(),
     })
@@ -148,10 +162,10 @@ export async function storeDecision(
         "not_found",
         "This unit has no sale in the ledger, so there is nothing to decide by. Check the serial.",
       );
-    const part = found.tree.find((p) => p.unitId === v.unitId);
+    const of = factsIn(found, v.unitId);
     // Without these two, a part that was replaced would be judged by its system's clause, and a unit
     // that was credited or taken back by a sale that is over.
-    if (!part && v.unitId !== found.unit.id)
+    if (!of)
       return refuse(
         "rule",
         `This part left ${found.unit.serial} some time ago. Decide about what stands in its slot now.`,
@@ -161,27 +175,34 @@ export async function storeDecision(
         "rule",
         `Its sale under order ${found.sale.orderNumber} ended on ${showDay(found.sale.endedOn)}, so no terms apply to it any more.`,
       );
+    const earlier = await ctx.tx
+      .selectDistinctOn([coverageDecisions.ticketId], {
+        ticket: tickets.number,
+        on: coverageDecisions.claimOn,
+        outcome: coverageDecisions.outcome,
+      })
+      .from(coverageDecisions)
+      .innerJoin(tickets, eq(tickets.id, coverageDecisions.ticketId))
+      .where(
+        and(
+          eq(coverageDecisions.unitId, v.unitId),
+          eq(coverageDecisions.saleLineId, found.sale.id),
+          ne(coverageDecisions.ticketId, v.ticketId),
+          lte(coverageDecisions.claimOn, v.claimOn),
+        ),
+      )
+      .orderBy(coverageDecisions.ticketId, desc(coverageDecisions.madeAt))
+      .limit(20);
     const facts: DecideInput = {
-      sale: {
-        shippedOn: found.sale.shippedOn,
-        deliveredOn: found.sale.deliveredOn,
-        invoicedOn: found.sale.invoicedOn,
-        condition: found.sale.condition,
-        buyerKind: found.sale.buyerKind,
-        country: found.sale.country,
-        pauses: found.sale.pauses,
-      },
-      clauses: found.clauses,
-      part: {
-        family: part?.family ?? found.unit.family,
-        swappedOn: part?.source === "swap" ? part.fromOn : null,
-      },
+      ...of,
       what: v.what,
       faultClass: v.faultClass,
       claimOn: v.claimOn,
       evidence: v.evidence,
       established: v.established,
+      ruledOut: v.ruledOut,
       readings: v.readings,
+      earlier: earlier.sort((a, b) => (a.on < b.on ? -1 : a.on > b.on ? 1 : a.ticket - b.ticket)),
       openRma: v.openRma,
       week: { workdays: found.site.workdays, holidays: found.site.holidays },
     };
@@ -244,42 +265,14 @@ export async function refreshCover(
 }
 
 async function windowRows(ctx: TxCtx, ids: string[]): Promise<(typeof coverWindows.$inferInsert)[]> {
-  const { tx } = ctx;
   const site = await defaultSite(ctx);
-  const sales = await tx
-    .select({ sale: saleLines, family: models.family })
-    .from(saleLines)
-    .innerJoin(units, eq(units.id, saleLines.unitId))
-    .innerJoin(models, eq(models.id, units.modelId))
-    .where(inArray(saleLines.id, ids));
-  const versionIds = [...new Set(sales.map((s) => s.sale.termsVersionId))];
-  const clauseRows = await tx.select().from(clauses).where(inArray(clauses.termsVersionId, versionIds));
-  const pauses = await tx.select().from(coverPauses).where(inArray(coverPauses.saleLineId, ids));
-  const parts = await tx
-    .select({
-      id: installations.id,
-      unitId: installations.unitId,
-      saleLineId: installations.saleLineId,
-      source: installations.source,
-      fromOn: installations.fromOn,
-      family: models.family,
-    })
-    .from(installations)
-    .innerJoin(units, eq(units.id, installations.unitId))
-    .innerJoin(models, eq(models.id, units.modelId))
-    .where(inArray(installations.saleLineId, ids));
   const out: (typeof coverWindows.$inferInsert)[] = [];
-  for (const { sale, family } of sales) {
-    const fact = {
-      ...sale,
-      pauses: pauses.filter((p) => p.saleLineId === sale.id).map((p) => ({ from: p.fromOn, to: p.toOn })),
-    };
-    const own: ClauseFact[] = clauseRows.filter((c) => c.termsVersionId === sale.termsVersionId);
-    const push = (unitId: string, installationId: string | null, fam: string, swappedOn: string | null) => {
-      for (const w of windowsFor(fact, own, { family: fam, swappedOn }, site))
+  for (const sale of await saleFactsFor(ctx, ids))
+    for (const { unitId, installationId, facts } of sale.units)
+      for (const w of windowsFor(facts.sale, facts.clauses, facts.part, site))
         out.push({
           id: ctx.newId(),
-          saleLineId: sale.id,
+          saleLineId: sale.saleLineId,
           accountId: sale.accountId,
           unitId,
           installationId,
@@ -290,11 +283,6 @@ async function windowRows(ctx: TxCtx, ids: string[]): Promise<(typeof coverWindo
           byFloor: w.byFloor ? 1 : 0,
           engine: ENGINE,
         });
-    };
-    push(sale.unitId, null, family, null);
-    for (const p of parts)
-      if (p.saleLineId === sale.id) push(p.unitId, p.id, p.family, p.source === "swap" ? p.fromOn : null);
-  }
   return out;
 }
 
@@ -302,12 +290,6 @@ async function windowRows(ctx: TxCtx, ids: string[]): Promise<(typeof coverWindo
 export async function inheritedCover(ctx: Ctx, ask: { replacedUnitId: string; onDay: string }) {
   const found = await saleCase(ctx, ask.replacedUnitId);
   if (!found) return null;
-  const part = found.tree.find((p) => p.unitId === ask.replacedUnitId);
-  return inherited({
-    sale: found.sale,
-    clauses: found.clauses,
-    week: found.site,
-    family: part?.family ?? found.unit.family,
-    swapOn: ask.onDay,
-  });
+  const of = factsIn(found, ask.replacedUnitId);
+  return of && inherited({ ...of, week: found.site, swapOn: ask.onDay });
 }

@@ -1,13 +1,33 @@
 import { and, asc, desc, eq, inArray, isNull, sql } from "drizzle-orm";
 import { read, type Tx } from "@/db/client";
 import { clauses, coverageDecisions, coverWindows, terms, termsVersions } from "@/db/schema/coverage";
-import { accounts, coverPauses, installations, models, saleLines, units } from "@/db/schema/ledger";
+import {
+  accounts,
+  coverPauses,
+  installations,
+  models,
+  saleLines,
+  saleTransfers,
+  units,
+} from "@/db/schema/ledger";
 import { daysBetween } from "@/lib/base/civil";
 import { showDayShort } from "@/lib/base/show";
 import type { Ctx } from "@/lib/ctx";
 import { defaultSite } from "@/lib/ledger/queries";
 import type { Site } from "@/lib/ledger/schema";
-import type { ClauseFact, CoverRow, CoverState, CoverView, Decision, SaleFact, TreePart } from "./schema";
+import { differenceOf, type Difference } from "./difference";
+import { readInputs } from "./rules";
+import type {
+  ClauseFact,
+  CoverRow,
+  CoverState,
+  CoverView,
+  DecideInput,
+  Decision,
+  PartFact,
+  SaleFact,
+  TreePart,
+} from "./schema";
 import { windowsFor } from "./windows";
 
 const clauseColumns = {
@@ -21,15 +41,26 @@ const clauseColumns = {
   startBasis: clauses.startBasis,
   deliveryGraceDays: clauses.deliveryGraceDays,
   dayRule: clauses.dayRule,
+  rolls: clauses.rolls,
+  clockStops: clauses.clockStops,
+  replacedRule: clauses.replacedRule,
+  transferRule: clauses.transferRule,
   remedies: clauses.remedies,
   dueBackDays: clauses.dueBackDays,
+  holdCents: clauses.holdCents,
+  freight: clauses.freight,
+  responseHours: clauses.responseHours,
   enduranceHours: clauses.enduranceHours,
+  enduranceTb: clauses.enduranceTb,
   exclusion: clauses.exclusion,
   evidence: clauses.evidence,
   feeKind: clauses.feeKind,
   feeCents: clauses.feeCents,
   words: clauses.words,
 };
+
+/** A sale as the engine reads it, with the clauses it was made under. */
+export type SaleFacts = { accountId: string; sale: SaleFact; swaps: string[]; clauses: ClauseFact[] };
 
 export type SaleCase = {
   sale: SaleFact & {
@@ -43,10 +74,13 @@ export type SaleCase = {
     termsName: string;
     termsIssue: number;
     endedOn: string | null;
+    swaps: string[];
   };
   unit: CoverView["unit"];
   clauses: ClauseFact[];
   tree: TreePart[];
+  /** Sales that cover parts moved here from other systems, as far as the one who asks may see them. */
+  origins: Map<string, SaleFacts>;
   site: Site;
 };
 
@@ -60,21 +94,13 @@ export async function saleCase(ctx: Ctx, unitId: string): Promise<SaleCase | nul
     const own = await newestSale(tx, unitId);
     const sale = own && own.endedOn === null ? own : ((await newestSaleOfParent(tx, unitId)) ?? own);
     if (!sale) return null;
-    const [clauseRows, pauses, tree] = [
-      await tx
-        .select(clauseColumns)
-        .from(clauses)
-        .where(eq(clauses.termsVersionId, sale.termsVersionId))
-        .orderBy(asc(clauses.sort)),
-      await tx
-        .select({ from: coverPauses.fromOn, to: coverPauses.toOn })
-        .from(coverPauses)
-        .where(eq(coverPauses.saleLineId, sale.id)),
-      await treeOfSale(tx, sale.id, sale.unitId),
-    ];
+    const tree = await treeOfSale(tx, sale.id, sale.unitId);
+    const elsewhere = tree.flatMap((p) => (p.coverSaleLineId ? [p.coverSaleLineId] : []));
+    const facts = await factsOfSales(tx, [sale.id, ...elsewhere]);
     const { serial, modelCode, modelName, family, unitCondition, ...rest } = sale;
+    const mine = facts.get(sale.id)!;
     return {
-      sale: { ...rest, pauses },
+      sale: { ...rest, ...mine.sale, swaps: mine.swaps },
       unit: {
         id: sale.unitId,
         serial,
@@ -83,10 +109,228 @@ export async function saleCase(ctx: Ctx, unitId: string): Promise<SaleCase | nul
         condition: rest.condition ?? unitCondition,
         family,
       },
-      clauses: clauseRows,
+      clauses: mine.clauses,
       tree,
+      origins: facts,
       site,
     };
+  });
+}
+
+/** Sales with their clauses, pauses and transfers, by sale line: four statements however many. */
+export async function factsOfSales(tx: Tx, ids: readonly string[]): Promise<Map<string, SaleFacts>> {
+  const of = [...new Set(ids)];
+  if (of.length === 0) return new Map();
+  const sales = await tx
+    .select({
+      id: saleLines.id,
+      accountId: saleLines.accountId,
+      shippedOn: saleLines.shippedOn,
+      deliveredOn: saleLines.deliveredOn,
+      invoicedOn: saleLines.invoicedOn,
+      installedOn: saleLines.installedOn,
+      condition: saleLines.condition,
+      buyerKind: saleLines.buyerKind,
+      country: saleLines.country,
+      swaps: saleLines.swaps,
+      termsVersionId: saleLines.termsVersionId,
+    })
+    .from(saleLines)
+    .where(inArray(saleLines.id, of));
+  const versions = [...new Set(sales.map((s) => s.termsVersionId))];
+  const clauseRows =
+    versions.length === 0
+      ? []
+      : await tx
+          .select({ versionId: clauses.termsVersionId, ...clauseColumns })
+          .from(clauses)
+          .where(inArray(clauses.termsVersionId, versions))
+          .orderBy(asc(clauses.sort));
+  const byVersion = new Map(
+    versions.map((v) => [
+      v,
+      clauseRows.filter((c) => c.versionId === v).map(({ versionId: _, ...c }): ClauseFact => c),
+    ]),
+  );
+  const pauses = groupBy(
+    await tx
+      .select({ of: coverPauses.saleLineId, from: coverPauses.fromOn, to: coverPauses.toOn })
+      .from(coverPauses)
+      .where(inArray(coverPauses.saleLineId, of)),
+  );
+  const transfers = groupBy(
+    await tx
+      .select({ of: saleTransfers.saleLineId, on: saleTransfers.onDay, noticedOn: saleTransfers.noticedOn })
+      .from(saleTransfers)
+      .where(inArray(saleTransfers.saleLineId, of))
+      .orderBy(asc(saleTransfers.onDay)),
+  );
+  return new Map(
+    sales.map(({ id, accountId, swaps, termsVersionId, ...sale }) => [
+      id,
+      {
+        accountId,
+        swaps,
+        clauses: byVersion.get(termsVersionId) ?? [],
+        sale: { ...sale, pauses: pauses.get(id) ?? [], transfers: transfers.get(id) ?? [] },
+      },
+    ]),
+  );
+}
+
+function groupBy<T extends { of: string }>(rows: T[]): Map<string, Omit<T, "of">[]> {
+  const out = new Map<string, Omit<T, "of">[]>();
+  for (const { of, ...rest } of rows) {
+    const list = out.get(of);
+    if (list) list.push(rest);
+    else out.set(of, [rest]);
+  }
+  return out;
+}
+
+type Standing = Pick<TreePart, "family" | "swaps" | "coverSaleLineId" | "givenOn" | "noticedOn">;
+export type UnitFacts = { sale: SaleFact; clauses: ClauseFact[]; part: PartFact };
+
+/**
+ * Sale, clauses and part as the engine takes them: of the unit that was sold, or of a part that
+ * stands in it. A part that was moved here keeps the terms it was sold under; where it came from
+ * another customer, it was given on that day.
+ */
+export function unitFacts(
+  holder: SaleFacts,
+  family: string,
+  standing: Standing | null,
+  origins: ReadonlyMap<string, SaleFacts>,
+): UnitFacts {
+  if (!standing)
+    return {
+      sale: holder.sale,
+      clauses: holder.clauses,
+      part: { family, within: null, swaps: holder.swaps, originKnown: true },
+    };
+  const { coverSaleLineId, givenOn, noticedOn } = standing;
+  const part = { family: standing.family, within: "system" };
+  if (coverSaleLineId === null)
+    return {
+      sale: holder.sale,
+      clauses: holder.clauses,
+      part: { ...part, swaps: [...holder.swaps, ...standing.swaps].sort(), originKnown: true },
+    };
+  const origin = origins.get(coverSaleLineId);
+  if (!origin)
+    return {
+      sale: holder.sale,
+      clauses: holder.clauses,
+      part: { ...part, swaps: [], originKnown: false },
+    };
+  const given = givenOn === null ? [] : [{ on: givenOn, noticedOn }];
+  return {
+    sale: {
+      ...origin.sale,
+      buyerKind: holder.sale.buyerKind,
+      country: holder.sale.country,
+      transfers: [...origin.sale.transfers, ...given],
+    },
+    clauses: origin.clauses,
+    part: { ...part, swaps: [...origin.swaps, ...standing.swaps].sort(), originKnown: true },
+  };
+}
+
+/** The facts of the unit asked for within its case: the system itself, or a part that stands in it now. */
+export function factsIn(found: SaleCase, unitId: string): UnitFacts | null {
+  const holder = {
+    accountId: found.sale.accountId,
+    sale: found.sale,
+    swaps: found.sale.swaps,
+    clauses: found.clauses,
+  };
+  const pick = (f: UnitFacts): UnitFacts => ({ ...f, sale: onlySale(f.sale) });
+  if (unitId === found.unit.id) return pick(unitFacts(holder, found.unit.family, null, found.origins));
+  const standing = found.tree.find((p) => p.unitId === unitId);
+  return standing ? pick(unitFacts(holder, standing.family, standing, found.origins)) : null;
+}
+
+/** What a decision keeps of a sale, and no more. */
+const onlySale = (s: SaleFact): SaleFact => ({
+  shippedOn: s.shippedOn,
+  deliveredOn: s.deliveredOn,
+  invoicedOn: s.invoicedOn,
+  installedOn: s.installedOn,
+  condition: s.condition,
+  buyerKind: s.buyerKind,
+  country: s.country,
+  pauses: s.pauses,
+  transfers: s.transfers,
+});
+
+export type SaleUnits = {
+  saleLineId: string;
+  accountId: string;
+  unitId: string;
+  units: { unitId: string; installationId: string | null; open: boolean; facts: UnitFacts }[];
+};
+
+/**
+ * Sales with every unit that stands or stood under them, as the engine takes them. For work on many
+ * at once: six statements however many sales.
+ */
+export async function saleFactsFor(ctx: Ctx, saleLineIds: readonly string[]): Promise<SaleUnits[]> {
+  if (saleLineIds.length === 0) return [];
+  return read(ctx, async (tx) => {
+    const ids = [...saleLineIds];
+    const roots = await tx
+      .select({
+        saleLineId: saleLines.id,
+        accountId: saleLines.accountId,
+        unitId: saleLines.unitId,
+        family: models.family,
+      })
+      .from(saleLines)
+      .innerJoin(units, eq(units.id, saleLines.unitId))
+      .innerJoin(models, eq(models.id, units.modelId))
+      .where(inArray(saleLines.id, ids));
+    const standing = await tx
+      .select({
+        of: installations.saleLineId,
+        id: installations.id,
+        unitId: installations.unitId,
+        family: models.family,
+        fromOn: installations.fromOn,
+        toOn: installations.toOn,
+        swaps: installations.swaps,
+        coverSaleLineId: installations.coverSaleLineId,
+        givenOn: installations.givenOn,
+        noticedOn: installations.noticedOn,
+      })
+      .from(installations)
+      .innerJoin(units, eq(units.id, installations.unitId))
+      .innerJoin(models, eq(models.id, units.modelId))
+      .where(inArray(installations.saleLineId, ids));
+    const elsewhere = standing.flatMap((p) => (p.coverSaleLineId ? [p.coverSaleLineId] : []));
+    const facts = await factsOfSales(tx, [...ids, ...elsewhere]);
+    const under = groupBy(standing.flatMap((p) => (p.of ? [{ ...p, of: p.of }] : [])));
+    return roots.map((r) => {
+      const holder = facts.get(r.saleLineId)!;
+      return {
+        saleLineId: r.saleLineId,
+        accountId: r.accountId,
+        unitId: r.unitId,
+        units: [
+          {
+            unitId: r.unitId,
+            installationId: null,
+            open: true,
+            facts: unitFacts(holder, r.family, null, facts),
+          },
+          ...(under.get(r.saleLineId) ?? []).map((p) => ({
+            unitId: p.unitId,
+            installationId: p.id,
+            open: p.toOn === null,
+            facts: unitFacts(holder, r.family, p, facts),
+          })),
+        ],
+      };
+    });
   });
 }
 
@@ -96,12 +340,7 @@ const saleColumns = {
   accountId: saleLines.accountId,
   accountName: accounts.name,
   orderNumber: saleLines.orderNumber,
-  shippedOn: saleLines.shippedOn,
-  deliveredOn: saleLines.deliveredOn,
-  invoicedOn: saleLines.invoicedOn,
   condition: saleLines.condition,
-  buyerKind: saleLines.buyerKind,
-  country: saleLines.country,
   siteNote: saleLines.siteNote,
   termsVersionId: saleLines.termsVersionId,
   termsName: terms.name,
@@ -156,6 +395,10 @@ async function treeOfSale(tx: Tx, saleLineId: string, rootId: string): Promise<T
       toOn: installations.toOn,
       removedReason: installations.removedReason,
       source: installations.source,
+      swaps: installations.swaps,
+      coverSaleLineId: installations.coverSaleLineId,
+      givenOn: installations.givenOn,
+      noticedOn: installations.noticedOn,
     })
     .from(installations)
     .innerJoin(units, eq(units.id, installations.unitId))
@@ -179,6 +422,10 @@ async function treeOfSale(tx: Tx, saleLineId: string, rootId: string): Promise<T
         depth,
         fromOn: r.fromOn,
         source: r.source,
+        swaps: r.swaps,
+        coverSaleLineId: r.coverSaleLineId,
+        givenOn: r.givenOn,
+        noticedOn: r.noticedOn,
         was: rows
           .filter((w) => w.toOn !== null && w.parentUnitId === r.parentUnitId && w.slot === r.slot)
           .map((w) => ({ serial: w.serial, toOn: w.toOn!, reason: w.removedReason })),
@@ -199,6 +446,16 @@ export function coverWords(w: { kind: "doa" | "cover"; lastOn: string }, onDay: 
   return `to ${showDayShort(w.lastOn)}`;
 }
 
+/** Cover in words, with why it ends when it does where that is no plain period. */
+function rowWords(
+  w: { kind: "doa" | "cover"; lastOn: string; byFloor: boolean; cutOn: string | null },
+  onDay: string,
+): string {
+  const words = coverWords(w, onDay);
+  if (w.cutOn) return `${words}, when it was given on`;
+  return w.byFloor ? `${words}, by the floor of a part we fitted` : words;
+}
+
 const stateOf = (w: { kind: "doa" | "cover"; firstOn: string; lastOn: string }, onDay: string): CoverState =>
   w.lastOn < onDay ? "ended" : w.kind === "doa" ? "doa" : "covered";
 
@@ -211,18 +468,19 @@ export async function coverFor(ctx: Ctx, unitId: string, onDay: string): Promise
   if (!found) return null;
   const { sale, unit, tree, site } = found;
   const rows: CoverRow[] = [];
-  const push = (
-    at: {
-      unitId: string;
-      serial: string;
-      slot: string | null;
-      family: string;
-      modelName: string;
-      depth: number;
-    },
-    swappedOn: string | null,
-  ) => {
-    for (const w of windowsFor(sale, found.clauses, { family: at.family, swappedOn }, site)) {
+  const unread: string[] = [];
+  const push = (at: {
+    unitId: string;
+    serial: string;
+    slot: string | null;
+    family: string;
+    modelName: string;
+    depth: number;
+  }) => {
+    const facts = factsIn(found, at.unitId)!;
+    const windows = windowsFor(facts.sale, facts.clauses, facts.part, site);
+    if (windows.length === 0) unread.push(at.unitId);
+    for (const w of windows) {
       rows.push({
         ...at,
         clauseNumber: w.clauseNumber,
@@ -231,23 +489,20 @@ export async function coverFor(ctx: Ctx, unitId: string, onDay: string): Promise
         firstOn: w.firstOn,
         lastOn: w.lastOn,
         state: stateOf(w, onDay),
-        words: coverWords(w, onDay),
+        words: rowWords(w, onDay),
         claimed: at.unitId === unitId,
       });
     }
   };
-  push(
-    {
-      unitId: unit.id,
-      serial: unit.serial,
-      slot: null,
-      family: unit.family,
-      modelName: unit.modelName,
-      depth: 0,
-    },
-    null,
-  );
-  for (const p of tree) push(p, p.source === "swap" ? p.fromOn : null);
+  push({
+    unitId: unit.id,
+    serial: unit.serial,
+    slot: null,
+    family: unit.family,
+    modelName: unit.modelName,
+    depth: 0,
+  });
+  for (const p of tree) push(p);
   return {
     unit,
     claimedUnitId: unitId,
@@ -265,6 +520,7 @@ export async function coverFor(ctx: Ctx, unitId: string, onDay: string): Promise
     termsIssue: sale.termsIssue,
     onDay,
     rows,
+    unread,
     tree,
   };
 }
@@ -329,6 +585,44 @@ export async function coverSummaries(
     });
   }
   return out;
+}
+
+/** Inputs and answer of a ticket's decisions, each with the one before it for the same unit: to tell what changed. */
+export async function differencesOf(ctx: Ctx, ticketId: string): Promise<Map<string, Difference>> {
+  const rows = await read(ctx, (tx) =>
+    tx
+      .select({
+        id: coverageDecisions.id,
+        previousId: coverageDecisions.previousId,
+        inputs: coverageDecisions.inputs,
+        answer: coverageDecisions.answer,
+      })
+      .from(coverageDecisions)
+      .where(eq(coverageDecisions.ticketId, ticketId))
+      .orderBy(asc(coverageDecisions.madeAt))
+      .limit(200),
+  );
+  const stored = new Map(
+    rows.map((r) => [r.id, { inputs: readInputs(r.inputs), answer: r.answer as Decision }]),
+  );
+  return new Map(
+    rows.flatMap((r) => {
+      const before = r.previousId ? stored.get(r.previousId) : undefined;
+      return before ? [[r.id, differenceOf(before, stored.get(r.id)!)] as const] : [];
+    }),
+  );
+}
+
+/** The inputs of one stored decision, in today's shape: what a person may try other facts on. */
+export async function decisionInputs(ctx: Ctx, decisionId: string): Promise<DecideInput | null> {
+  const [row] = await read(ctx, (tx) =>
+    tx
+      .select({ inputs: coverageDecisions.inputs })
+      .from(coverageDecisions)
+      .where(eq(coverageDecisions.id, decisionId))
+      .limit(1),
+  );
+  return row ? readInputs(row.inputs) : null;
 }
 
 export type DecisionView = {

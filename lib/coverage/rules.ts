@@ -1,339 +1,289 @@
-import { addDays, daysBetween } from "../base/civil";
 import { periodWords } from "../base/period";
-import { capital, showDay } from "../base/show";
-import { EVIDENCE_FOR, type ClauseFact, type DecideInput, type Decision, type Reason } from "./schema";
-import { clauseFor, windowsFor } from "./windows";
+import { showDay } from "../base/show";
+import { changesFor } from "./changes";
+import { exclusionsFor, limitsOf } from "./limits";
+import { lower, reason } from "./reasons";
+import {
+  EVIDENCE_FOR,
+  EXCLUSION_WORDS,
+  type ClauseFact,
+  type CoverWindow,
+  type DecideInput,
+  type Decision,
+  type FactPatch,
+  type Outcome,
+  type Reason,
+} from "./schema";
+import { clauseFor, givenOn, windowsFor } from "./windows";
 
 /** Changes whenever one input could get another answer. Stored with each decision. */
-export const ENGINE = "2";
+export const ENGINE = "3";
 
-/** Faults that a clause may exclude, once the evidence shows them. */
-const EXCLUDABLE: Record<string, string> = {
-  bent_contacts: "bent_contacts",
-  physical_damage: "physical_damage",
-  liquid: "liquid",
+/** What a decision is before it is said what would change it. */
+export type Judgement = Omit<Decision, "engine" | "fees" | "windows" | "wouldChange" | "handling"> & {
+  active: CoverWindow | null;
 };
-
-type Draft = Omit<Decision, "engine" | "fees" | "windows">;
 
 /**
  * The coverage decision for one unit or part, one fault and one day.
  *
  * Pure: the same input gives the same answer for ever, which is why the input is stored with it.
- * Days are civil days in the seller's zone; the last covered day counts in full.
+ * Days are civil days in the seller's zone; the last covered day counts in full. What would change
+ * the answer is found by putting one fact otherwise and deciding again, never from a list.
  */
 export function decide(input: DecideInput): Decision {
   const windows = windowsFor(input.sale, input.clauses, input.part, input.week);
-  const draft = judge(input, windows);
-  const ofCover = draft.outcome === "covered" || draft.outcome === "covered_doa";
-  return { engine: ENGINE, ...draft, windows, fees: ofCover ? feesFor(input) : [] };
+  const { active, ...answer } = judge(input, windows);
+  const clause = active ? input.clauses.find((c) => c.id === active.clauseId) : undefined;
+  const gives = covers(answer.outcome);
+  return {
+    engine: ENGINE,
+    ...answer,
+    windows,
+    fees: gives ? feesFor(input) : [],
+    handling: {
+      dueBackDays: gives ? (clause?.dueBackDays ?? null) : null,
+      holdCents: gives && input.sale.buyerKind === "business" ? (clause?.holdCents ?? null) : null,
+      // Freight of a consumer's faulty unit is the seller's; so it is for a buyer we do not know.
+      freight: !gives
+        ? null
+        : input.sale.buyerKind === "business"
+          ? (clause?.freight ?? null)
+          : "seller_both",
+      responseHours: clause?.responseHours ?? null,
+    },
+    wouldChange: changesFor(input, answer, windows, (patch) => outcomeWith(input, patch)),
+  };
 }
 
-function judge(input: DecideInput, windows: Decision["windows"]): Draft {
-  const { sale, claimOn, what } = input;
-  const doa = windows.find((w) => w.kind === "doa");
-  const cover = windows.find((w) => w.kind === "cover");
-  const reasons: Reason[] = [];
-  const evidenceWanted = missingEvidence(input);
+export const covers = (outcome: Outcome) => outcome === "covered" || outcome === "covered_doa";
 
-  if (claimOn < sale.shippedOn) {
-    const staff = `The claim of ${showDay(claimOn)} comes before the ship day ${showDay(sale.shippedOn)}; one of the two is wrong.`;
-    return person(
-      input,
-      cover,
-      [
-        {
-          rule: "claim_before_ship",
-          clause: null,
-          staff,
-          customer:
-            "The day we shipped it and the day you wrote do not fit together, so a person checks the order.",
-        },
-      ],
-      [
-        {
-          fact: "ship_day",
-          staff: "The right ship day or claim day.",
-          customer: "The delivery note of this unit.",
-        },
-      ],
-    );
-  }
-  if (input.readings.serialMatches === false) {
-    return person(
-      input,
-      cover,
-      [
-        {
-          rule: "serial_differs",
-          clause: null,
-          staff: `The log names ${input.readings.serial ?? "another serial"}, which is not the serial claimed.`,
-          customer: "The log you sent is of another part than the one you chose, so a person looks at both.",
-        },
-      ],
-      [
-        {
-          fact: "log_of_this_serial",
-          staff: "A log of the claimed serial.",
-          customer: "A log of the part you chose.",
-        },
-      ],
-    );
-  }
-  const named = clauseFor(input.clauses, "cover", input.part.family, sale.condition);
-  if (!cover && named && input.part.swappedOn) {
-    const fitted = showDay(input.part.swappedOn);
-    return person(
-      input,
-      cover,
-      [
-        {
-          rule: "fitted_after_cover",
-          clause: named.number,
-          staff: `Clause ${named.number}, ${lower(named.title)}, had ended when this part was fitted on ${fitted}, and these terms give a part we fit no cover of its own.`,
-          customer: `The first cover had ended when we fitted this part on ${fitted}, so a person looks at what was agreed then.`,
-        },
-      ],
-      [
-        {
-          fact: "agreement",
-          staff: "What was agreed when the part was fitted, or goodwill.",
-          customer: "The note that came with this part.",
-        },
-      ],
-    );
-  }
+/** The input with one fact put otherwise. */
+export function applyChange(input: DecideInput, patch: FactPatch): DecideInput {
+  const { sale } = input;
+  const open = sale.transfers.findLastIndex((t) => t.noticedOn === null);
+  return {
+    ...input,
+    sale: {
+      ...sale,
+      ...patch.sale,
+      pauses: patch.pause ? [...sale.pauses, patch.pause] : sale.pauses,
+      transfers: patch.noticedOn
+        ? sale.transfers.map((t, i) => (i === open ? { ...t, noticedOn: patch.noticedOn! } : t))
+        : sale.transfers,
+    },
+    claimOn: patch.claimOn ?? input.claimOn,
+    established: patch.established
+      ? [...new Set([...input.established, patch.established])]
+      : input.established.filter((x) => x !== patch.ruledOut),
+    ruledOut: patch.ruledOut
+      ? [...new Set([...input.ruledOut, patch.ruledOut])]
+      : input.ruledOut.filter((x) => x !== patch.established),
+    evidence: {
+      ...input.evidence,
+      photos: input.evidence.photos + (patch.photos ?? 0),
+    },
+    readings: patch.readings ?? input.readings,
+  };
+}
+
+function outcomeWith(input: DecideInput, patch: FactPatch): Outcome {
+  const put = applyChange(input, patch);
+  return judge(put, windowsFor(put.sale, put.clauses, put.part, put.week)).outcome;
+}
+
+/** True when either of the two is past its limit: whichever is reached first counts. */
+const pastLimits = (readings: DecideInput["readings"], clause: ClauseFact | null | undefined) => {
+  const { limitHours, limitBytes } = limitsOf(clause);
+  return (
+    (limitHours !== null && (readings.powerOnHours ?? 0) > limitHours) ||
+    (limitBytes !== null && (readings.bytesWritten ?? 0) > limitBytes)
+  );
+};
+
+const aboutLog = (need: string) => /\b(log|read-out)\b/.test(need) && !/photo/.test(need);
+const hasEvidence = (input: DecideInput, need: string) =>
+  aboutLog(need) ? input.evidence.logs > 0 : input.evidence.photos > 0;
+
+function judge(input: DecideInput, windows: CoverWindow[]): Judgement {
+  const { sale, claimOn, part } = input;
+  const doa = windows.find((w) => w.kind === "doa") ?? null;
+  const cover = windows.find((w) => w.kind === "cover") ?? null;
+  const person = (reasons: Reason[], at: CoverWindow | null = cover) =>
+    answer(input, "needs_person", at, reasons);
+
+  if (claimOn < sale.shippedOn)
+    return person([
+      reason("claim_before_ship", {
+        source: "the ledger's ship day and the record's first receipt",
+        dates: { claimOn, shippedOn: sale.shippedOn },
+      }),
+    ]);
+  if (input.readings.serialMatches === false)
+    return person([
+      reason("serial_differs", { source: "the log", words: { logSerial: input.readings.serial ?? "" } }),
+    ]);
+  if (!part.originKnown) return person([reason("sold_elsewhere", {})]);
+
+  const named = clauseFor(input.clauses, "cover", part, sale.condition);
   if (!cover) {
-    const staff = `These terms have no clause for the ${input.part.family.replace("_", " ")}.`;
-    return person(
-      input,
-      cover,
-      [
-        {
-          rule: "no_clause",
-          clause: null,
-          staff,
-          customer: "Your terms do not name this kind of part, so a person reads them with you.",
-        },
-      ],
-      [
-        {
-          fact: "terms",
-          staff: "A person's reading of the terms, or goodwill.",
-          customer: "The offer or contract this part was sold under.",
-        },
-      ],
-    );
-  }
-
-  const inDoa = doa !== undefined && claimOn <= doa.lastOn;
-  const inCover = claimOn <= cover.lastOn;
-  const active = inDoa ? doa : cover;
-  const clause = input.clauses.find((c) => c.id === active.clauseId)!;
-  reasons.push(dateReason(input, active, clause, inDoa || inCover));
-
-  const hours = input.readings.powerOnHours;
-  const limit = input.clauses.find((c) => c.id === cover.clauseId)?.enduranceHours ?? null;
-  if (inCover && limit !== null && hours !== undefined) {
-    const over = hours > limit;
-    reasons.push({
-      rule: "endurance",
-      clause: cover.clauseNumber,
-      staff: `The log shows ${thin(hours)} of ${thin(limit)} hours.`,
-      customer: `Its log shows ${thin(hours)} hours; the clause covers ${thin(limit)}.`,
-    });
-    if (over && !inDoa)
-      return no(input, cover, reasons, [
-        {
-          fact: "hours",
-          staff: `A log of this serial under ${thin(limit)} h.`,
-          customer: "A log of this drive that shows fewer hours.",
-        },
+    const fittedOn = part.swaps.at(-1);
+    if (named && fittedOn)
+      return person([
+        reason("fitted_after_cover", {
+          clause: named.number,
+          source: "the as-built tree",
+          dates: { fittedOn },
+          words: { title: named.title },
+        }),
       ]);
-  }
-
-  const excluded = EXCLUDABLE[input.faultClass];
-  const exclusion = excluded
-    ? input.clauses.find((c) => c.kind === "exclusion" && c.exclusion === excluded)
-    : undefined;
-  if ((inDoa || inCover) && exclusion) {
-    if (input.established.includes(excluded!)) {
-      reasons.push({
-        rule: "exclusion_shown",
-        clause: exclusion.number,
-        staff: `Clause ${exclusion.number}, ${lower(exclusion.title)}: the evidence shows it.`,
-        customer: `Clause ${exclusion.number} leaves out ${lower(exclusion.title)}, and the evidence shows it.`,
-      });
-      return no(
-        input,
-        exclusion,
-        reasons,
-        [
-          {
-            fact: "outbound_photo",
-            staff: "Our photo from before shipping that shows the same damage.",
-            customer: "If our own photo from before shipping shows it too, we decide again.",
-          },
-        ],
-        cover.lastOn,
-      );
-    }
-    const need = exclusion.evidence[0] ?? "photo of the damage";
-    reasons.push({
-      rule: "exclusion_open",
-      clause: exclusion.number,
-      staff:
-        input.evidence.photos > 0
-          ? `Clause ${exclusion.number} may apply (${lower(exclusion.title)}); a person must look at the photos and compare them with ours.`
-          : `Clause ${exclusion.number} may apply (${lower(exclusion.title)}), and no ${need} is there to show it either way.`,
-      customer: `We must see whether clause ${exclusion.number}, ${lower(exclusion.title)}, applies. We never assume it does.`,
-    });
-    return person(input, cover, reasons, [
-      {
-        fact: "evidence",
-        staff: capital(`${need}, and ours from before shipping.`),
-        customer: capital(`${need}, close enough to see it well.`),
-      },
+    return person([
+      reason("no_clause", { source: "the terms", words: { family: part.family.replace("_", " ") } }),
     ]);
   }
 
-  if (!inDoa && !inCover) return no(input, cover, reasons, laterStart(input, cover));
-
-  if (input.openRma) {
-    reasons.push({
-      rule: "open_rma",
-      clause: null,
-      staff: `${input.openRma} is open on this unit already.`,
-      customer: `You already have ${input.openRma} for this part.`,
+  const reasons: Reason[] = [];
+  const given = givenOn(sale, input.clauses, part, input.week, claimOn).filter((g) => g.on < claimOn);
+  for (const g of given) {
+    const r = reason(`given_on_${g.state}`, {
+      clause: g.clause?.number,
+      source: "the ledger's note of it",
+      dates: { givenOn: g.on, noticedOn: g.noticedOn, noticeBy: g.noticeBy },
+      words: { title: g.clause?.title ?? "" },
     });
+    reasons.push(r);
+    // Where the days are over anyway, no notice helps: the days decide.
+    const over = !windowsFor({ ...sale, transfers: [] }, input.clauses, part, input.week).some(
+      (w) => claimOn <= w.lastOn,
+    );
+    if (!over && (g.state === "unnamed" || g.state === "notice_open")) return person(reasons);
+    if (!over && (g.state === "first_buyer" || g.state === "not_noticed"))
+      return answer(input, "not_covered", cover, reasons);
   }
+
+  const inDoa = doa !== null && claimOn <= doa.lastOn;
+  const inCover = claimOn <= cover.lastOn;
+  const active = inDoa ? doa : cover;
+  reasons.push(dateReason(input, active));
+  if (!inDoa && !inCover) return answer(input, "not_covered", cover, reasons);
+
+  const clause = input.clauses.find((c) => c.id === cover.clauseId);
+  const { limitHours, limitBytes } = limitsOf(clause);
+  const { powerOnHours: hours, bytesWritten: bytes, serialMatches } = input.readings;
+  const read = (limitHours !== null && hours !== undefined) || (limitBytes !== null && bytes !== undefined);
+  if (inCover && read) {
+    const past = pastLimits(input.readings, clause);
+    reasons.push(
+      reason("endurance", {
+        clause: clause?.number,
+        source: "the log",
+        numbers: { hours, limitHours, bytes, limitBytes },
+        words: { serial: input.readings.serial ?? "" },
+      }),
+    );
+    if (past && !inDoa) {
+      if (serialMatches === true) return answer(input, "not_covered", cover, reasons);
+      return person([
+        ...reasons.slice(0, -1),
+        reason("endurance_unproven", { clause: clause?.number, source: "the log" }),
+      ]);
+    }
+  }
+
+  for (const { name, clause, asked } of exclusionsFor(input)) {
+    const facts = {
+      clause: clause.number,
+      source: "the evidence on record",
+      words: { title: clause.title, exclusion: name },
+      evidence: clause.evidence,
+      numbers: { photos: input.evidence.photos, logs: input.evidence.logs },
+    };
+    if (input.ruledOut.includes(name)) {
+      reasons.push(reason("exclusion_ruled_out", facts));
+    } else if (input.established.includes(name)) {
+      const need = clause.evidence[0] ?? "photo of the damage";
+      if (!hasEvidence(input, need))
+        return person([...reasons, reason("exclusion_unproven", { ...facts, evidence: [need] })]);
+      return answer(
+        input,
+        "not_covered",
+        cover,
+        [...reasons, reason("exclusion_shown", facts)],
+        clause.number,
+      );
+    } else if (asked) {
+      const need = clause.evidence[0] ?? "photo of the damage";
+      return person([...reasons, reason("exclusion_open", { ...facts, evidence: [need] })]);
+    }
+  }
+
+  if (input.earlier.length > 0)
+    reasons.push(
+      reason("earlier_claims", {
+        source: "the record",
+        dates: { lastOn: input.earlier.at(-1)!.on },
+        numbers: { count: input.earlier.length },
+        words: { list: input.earlier.map((e) => `ticket ${e.ticket} of ${showDay(e.on)}`).join(", ") },
+      }),
+    );
+  if (input.openRma)
+    reasons.push(reason("open_rma", { source: "the record", words: { rma: input.openRma } }));
+  return answer(input, inDoa ? "covered_doa" : "covered", active, reasons);
+}
+
+function answer(
+  input: DecideInput,
+  outcome: Outcome,
+  at: CoverWindow | null,
+  reasons: Reason[],
+  clauseNumber?: string,
+): Judgement {
+  const head = {
+    covered: ["Covered", "You are covered."],
+    covered_doa: ["Covered as dead on arrival", "You are covered."],
+    not_covered: ["Not covered", "This is not covered under our warranty."],
+    needs_person: ["Needs a person", "A person is looking at this."],
+  }[outcome] as [string, string];
+  const clause = at ? input.clauses.find((c) => c.id === at.clauseId) : undefined;
   return {
-    outcome: inDoa ? "covered_doa" : "covered",
-    headline: {
-      staff: inDoa ? `Covered as dead on arrival: ${what}.` : `Covered: ${what}.`,
-      customer: "You are covered.",
-    },
-    clauseNumber: active.clauseNumber,
-    lastCoveredOn: active.lastOn,
-    remedies: clause.remedies,
+    outcome,
+    headline: { staff: `${head[0]}: ${input.what}.`, customer: head[1] },
+    clauseNumber: clauseNumber ?? at?.clauseNumber ?? null,
+    lastCoveredOn: at?.lastOn ?? null,
+    remedies: outcome === "not_covered" ? [] : (clause?.remedies ?? []),
     reasons,
-    wouldChange: exclusionsThatCould(input),
-    evidenceWanted,
+    evidenceWanted: missingEvidence(input),
+    active: at,
   };
 }
 
-const lower = (t: string) => t.charAt(0).toLowerCase() + t.slice(1);
-const thin = (n: number) => n.toLocaleString("en-US").replace(/,/g, "\u00a0");
-
-function dateReason(
-  input: DecideInput,
-  w: Decision["windows"][number],
-  clause: ClauseFact,
-  inside: boolean,
-): Reason {
-  const { claimOn } = input;
-  const gap = Math.abs(daysBetween(claimOn, w.lastOn));
+function dateReason(input: DecideInput, w: CoverWindow): Reason {
+  const swappedOn = input.part.swaps.at(-1);
   const base = w.byFloor
-    ? `we fitted it on ${showDay(input.part.swappedOn!)}, and a part we fit has at least its own floor`
-    : input.part.swappedOn
-      ? `we fitted it on ${showDay(input.part.swappedOn)}, so it has the rest of the first cover (${w.startWords})`
+    ? `we fitted it on ${showDay(swappedOn!)}, and a part we fit has at least its own floor`
+    : swappedOn
+      ? `we fitted it on ${showDay(swappedOn)}, so it has the rest of the first cover (${w.startWords})`
       : w.startWords;
-  const when =
-    gap === 0
-      ? "on its last covered day"
-      : `${gap} ${gap === 1 ? "day" : "days"} ${inside ? "before its end" : "after it"}`;
-  return {
-    rule: w.kind === "doa" ? "doa_window" : "cover_window",
-    clause: clause.number,
-    staff: `Clause ${clause.number}, ${lower(clause.title)}: ${base}; last covered day ${showDay(w.lastOn)}. The claim of ${showDay(claimOn)} came ${when}.`,
-    customer: inside
-      ? `It is covered to ${showDay(w.lastOn)} under clause ${clause.number} of your terms (${base}), and you wrote to us on ${showDay(claimOn)}.`
-      : `Under our warranty it was covered to ${showDay(w.lastOn)} (clause ${clause.number}: ${base}), and you wrote to us on ${showDay(claimOn)}.`,
-  };
+  return reason(w.kind === "doa" ? "doa_window" : "cover_window", {
+    clause: w.clauseNumber,
+    source: "the ledger's days and the clause",
+    dates: {
+      claimOn: input.claimOn,
+      startOn: w.startOn,
+      lastOn: w.lastOn,
+      cutOn: w.cutOn,
+      swappedOn: swappedOn ?? null,
+    },
+    words: { title: w.clauseTitle, base },
+  });
 }
 
 function missingEvidence(input: DecideInput): string[] {
-  const wanted = EVIDENCE_FOR[input.faultClass].map((e) => e.what);
-  const isLog = (w: string) => /\blog\b/.test(w) && !/photo/.test(w);
-  return wanted.filter((w) =>
-    isLog(w) ? input.evidence.logs === 0 : input.evidence.photos + input.evidence.logs === 0,
-  );
-}
-
-/** What start day would make the claim fall inside, computed by trying the days that could. */
-function laterStart(input: DecideInput, cover: Decision["windows"][number]): Decision["wouldChange"] {
-  const clause = input.clauses.find((c) => c.id === cover.clauseId)!;
-  const changes: Decision["wouldChange"] = [];
-  if (clause.startBasis === "delivered" && input.sale.deliveredOn === null) {
-    // Months differ in length, so the day sought lies a few days to either side of the plain difference.
-    let day = addDays(cover.startOn, Math.max(1, daysBetween(cover.lastOn, input.claimOn) - 4));
-    for (let i = 0; i < 9; i++) {
-      const again = windowsFor({ ...input.sale, deliveredOn: day }, input.clauses, input.part, input.week);
-      if ((again.find((w) => w.kind === "cover")?.lastOn ?? "") >= input.claimOn) break;
-      day = addDays(day, 1);
-    }
-    if (daysBetween(cover.startOn, day) <= 60)
-      changes.push({
-        fact: "delivery_proof",
-        staff: `Proof of delivery on or after ${showDay(day)}.`,
-        customer: `A delivery note that shows ${showDay(day)} or later.`,
-      });
-  }
-  changes.push({
-    fact: "earlier_report",
-    staff: `A first report received on or before ${showDay(cover.lastOn)}.`,
-    customer: `A mail or note that shows you told us by ${showDay(cover.lastOn)}.`,
-  });
-  return changes;
-}
-
-function exclusionsThatCould(input: DecideInput): Decision["wouldChange"] {
-  const damage = input.clauses.find((c) => c.kind === "exclusion" && c.exclusion === "physical_damage");
-  if (!damage) return [];
-  return [
-    {
-      fact: "damage_found",
-      staff: `A dock or bench photo that shows ${lower(damage.title)}; then clause ${damage.number}, and a person rules on it.`,
-      customer: `If our bench finds ${lower(damage.title)}, a person looks again and writes to you first.`,
-    },
-  ];
-}
-
-function no(
-  input: DecideInput,
-  at: { clauseNumber?: string; number?: string; lastOn?: string },
-  reasons: Reason[],
-  wouldChange: Decision["wouldChange"],
-  lastOn?: string,
-): Draft {
-  return {
-    outcome: "not_covered",
-    headline: { staff: `Not covered: ${input.what}.`, customer: "This is not covered under our warranty." },
-    clauseNumber: at.clauseNumber ?? at.number ?? null,
-    lastCoveredOn: lastOn ?? at.lastOn ?? null,
-    remedies: [],
-    reasons,
-    wouldChange,
-    evidenceWanted: missingEvidence(input),
-  };
-}
-
-function person(
-  input: DecideInput,
-  cover: Decision["windows"][number] | undefined,
-  reasons: Reason[],
-  wouldChange: Decision["wouldChange"],
-): Draft {
-  return {
-    outcome: "needs_person",
-    headline: { staff: `Needs a person: ${input.what}.`, customer: "A person is looking at this." },
-    clauseNumber: cover?.clauseNumber ?? null,
-    lastCoveredOn: cover?.lastOn ?? null,
-    remedies: cover ? (input.clauses.find((c) => c.id === cover.clauseId)?.remedies ?? []) : [],
-    reasons,
-    wouldChange,
-    evidenceWanted: missingEvidence(input),
-  };
+  return EVIDENCE_FOR[input.faultClass]
+    .map((e) => e.what)
+    .filter((w) =>
+      aboutLog(w) ? input.evidence.logs === 0 : input.evidence.photos + input.evidence.logs === 0,
+    );
 }
 
 /** Fees that may apply, told before. A consumer, or a buyer we do not know, never pays one on a fault. */
@@ -346,18 +296,50 @@ function feesFor(input: DecideInput): Decision["fees"] {
 
 /** The last covered day that a part fitted today would have, with the sentence for it. */
 export function inherited(
-  input: Pick<DecideInput, "sale" | "clauses" | "week"> & { family: string; swapOn: string },
+  input: Pick<DecideInput, "sale" | "clauses" | "week"> & {
+    part: Pick<DecideInput["part"], "family" | "within" | "swaps">;
+    swapOn: string;
+  },
 ) {
-  const w = windowsFor(
-    input.sale,
-    input.clauses,
-    { family: input.family, swappedOn: input.swapOn },
-    input.week,
-  ).find((x) => x.kind === "cover");
+  const part = { ...input.part, swaps: [...input.part.swaps, input.swapOn], originKnown: true };
+  const w = windowsFor(input.sale, input.clauses, part, input.week).find((x) => x.kind === "cover");
   if (!w) return null;
-  const floor = clauseFor(input.clauses, "replaced_part", input.family, input.sale.condition);
+  const floor = clauseFor(input.clauses, "replaced_part", part, input.sale.condition);
   const words = w.byFloor
     ? `covered to ${showDay(w.lastOn)}: ${periodWords(floor?.period ?? "")} from the swap, longer than the rest of the first cover`
     : `covered to ${showDay(w.lastOn)}: the rest of the first cover (${w.startWords})`;
   return { lastCoveredOn: w.lastOn, byFloor: w.byFloor, words };
+}
+
+/** Words of an exclusion, also of one that a newer list no longer has. */
+export const exclusionWords = (name: string): string =>
+  (EXCLUSION_WORDS as Record<string, string>)[name] ?? lower(name.replaceAll("_", " "));
+
+/** Inputs as an earlier engine stored them, in today's shape: what it did not know is left as unknown. */
+export function readInputs(stored: unknown): DecideInput {
+  const old = stored as DecideInput & { part: { swappedOn?: string | null } };
+  const clause = (c: ClauseFact): ClauseFact => ({
+    ...c,
+    rolls: c.rolls ?? true,
+    clockStops: c.clockStops ?? true,
+    replacedRule: c.replacedRule ?? "later_of_both",
+    transferRule: c.transferRule ?? null,
+    holdCents: c.holdCents ?? null,
+    freight: c.freight ?? null,
+    responseHours: c.responseHours ?? null,
+    enduranceTb: c.enduranceTb ?? null,
+  });
+  return {
+    ...old,
+    clauses: old.clauses.map(clause),
+    sale: { ...old.sale, installedOn: old.sale.installedOn ?? null, transfers: old.sale.transfers ?? [] },
+    part: {
+      family: old.part.family,
+      within: old.part.within ?? null,
+      swaps: old.part.swaps ?? (old.part.swappedOn ? [old.part.swappedOn] : []),
+      originKnown: old.part.originKnown ?? true,
+    },
+    ruledOut: old.ruledOut ?? [],
+    earlier: old.earlier ?? [],
+  };
 }

@@ -29,6 +29,13 @@ export const REMEDY_WORDS: Record<Remedy, string> = {
 export const OUTCOMES = ["covered", "covered_doa", "not_covered", "needs_person"] as const;
 export type Outcome = (typeof OUTCOMES)[number];
 
+export const OUTCOME_WORDS: Record<Outcome, string> = {
+  covered: "covered",
+  covered_doa: "covered as dead on arrival",
+  not_covered: "not covered",
+  needs_person: "needs a person",
+};
+
 export const WINDOW_KINDS = ["doa", "cover"] as const;
 export type WindowKind = (typeof WINDOW_KINDS)[number];
 
@@ -184,16 +191,24 @@ export type SaleFact = {
   shippedOn: string;
   deliveredOn: string | null;
   invoicedOn: string | null;
+  /** Set up at the customer's. */
+  installedOn: string | null;
   condition: string;
   buyerKind: "business" | "consumer" | "unknown";
   country: string;
   pauses: { from: string; to: string }[];
+  /** Given on to another company, in order, with the day of the written notice. */
+  transfers: { on: string; noticedOn: string | null }[];
 };
 
 export type PartFact = {
   family: string;
-  /** The day it was fitted as a replacement; none for what was shipped with the unit. */
-  swappedOn: string | null;
+  /** Family of the unit it was sold in; none when it was sold by itself. */
+  within: string | null;
+  /** Days on which its place was filled anew under this sale, in order: empty for what was shipped. */
+  swaps: string[];
+  /** False: it stands here but was sold elsewhere, under a sale that the one who asks may not see. */
+  originKnown: boolean;
 };
 
 export type CoverWindow = {
@@ -205,6 +220,8 @@ export type CoverWindow = {
   lastOn: string;
   /** The replaced-part floor decided, not the remainder. */
   byFloor: boolean;
+  /** Cover ended early on this day, because the unit was given on. */
+  cutOn: string | null;
   /** The day the period runs from, and why that day. */
   startOn: string;
   startWords: string;
@@ -216,20 +233,86 @@ export type DecideInput = {
   part: PartFact;
   what: string;
   faultClass: FaultClass;
+  /** Day of first receipt in the seller's zone. */
   claimOn: string;
-  /** What is there to see: kinds of evidence that came, in the words they were asked for. */
+  /** What is there to see: kinds of evidence that came. */
   evidence: { photos: number; logs: number };
-  /** Exclusions that a person has found shown by the evidence. */
+  /** Exclusions that a person found shown by the evidence, and those a person looked for and ruled out. */
   established: string[];
-  readings: { powerOnHours?: number; serial?: string; serialMatches?: boolean };
+  ruledOut: string[];
+  readings: {
+    powerOnHours?: number;
+    /** Bytes written over its life. */
+    bytesWritten?: number;
+    serial?: string;
+    /** The log names the serial claimed. Left out: it names none. */
+    serialMatches?: boolean;
+  };
+  /** Earlier claims of this unit under the same sale, oldest first. */
+  earlier: { ticket: number; on: string; outcome: Outcome }[];
   /** An RMA already open on this unit. */
   openRma: string | null;
   week: { workdays: number[]; holidays: string[] };
 };
 
-export type Reason = {
-  rule: string;
+export const REASON_RULES = [
+  "claim_before_ship",
+  "serial_differs",
+  "sold_elsewhere",
+  "fitted_after_cover",
+  "no_clause",
+  "given_on_unnamed",
+  "given_on_first_buyer",
+  "given_on_notice_open",
+  "given_on_not_noticed",
+  "given_on_noticed",
+  "given_on_follows",
+  "doa_window",
+  "cover_window",
+  "endurance",
+  "endurance_unproven",
+  "exclusion_shown",
+  "exclusion_unproven",
+  "exclusion_open",
+  "exclusion_ruled_out",
+  "earlier_claims",
+  "open_rma",
+] as const;
+export type ReasonRule = (typeof REASON_RULES)[number];
+
+/** What a reason stands on. Days are civil days; numbers carry their unit in their name. */
+export type ReasonFacts = {
+  rule: ReasonRule;
+  /** The clause it is by, as people cite it. */
   clause: string | null;
+  /** Where the facts are from. */
+  source: string;
+  dates: Record<string, string>;
+  numbers: Record<string, number>;
+  words: Record<string, string>;
+  /** The evidence that shows it, or is missing. */
+  evidence: string[];
+};
+/** A reason with its one plain sentence for staff and one for the customer. */
+export type Reason = ReasonFacts & { staff: string; customer: string };
+
+/** One fact put otherwise. Applied to the input it gives another answer: see rules.applyChange. */
+export type FactPatch = {
+  sale?: Partial<Pick<SaleFact, "shippedOn" | "deliveredOn" | "invoicedOn" | "installedOn">>;
+  pause?: { from: string; to: string };
+  noticedOn?: string;
+  claimOn?: string;
+  established?: string;
+  ruledOut?: string;
+  photos?: number;
+  readings?: DecideInput["readings"];
+};
+export type Change = {
+  fact: string;
+  /** None: no single fact settles it, a person must. */
+  patch: FactPatch | null;
+  /** What the decision would be then. */
+  to: Outcome | null;
   staff: string;
   customer: string;
 };
@@ -243,8 +326,15 @@ export type Decision = {
   windows: CoverWindow[];
   remedies: Remedy[];
   fees: { kind: string; cents: number; words: string }[];
+  /** What goes with the remedies: days to send the old part back, what is held, freight, our answer. */
+  handling: {
+    dueBackDays: number | null;
+    holdCents: number | null;
+    freight: FreightRule | null;
+    responseHours: number | null;
+  };
   reasons: Reason[];
-  wouldChange: { fact: string; staff: string; customer: string }[];
+  wouldChange: Change[];
   evidenceWanted: string[];
 };
 
@@ -279,7 +369,14 @@ export type TreePart = {
   modelName: string;
   depth: number;
   fromOn: string;
-  source: "as_built" | "swap";
+  source: "as_built" | "swap" | "moved";
+  /** Days on which this place was filled anew, up to this part. */
+  swaps: string[];
+  /** The sale whose terms cover it, when it was moved here from another system. */
+  coverSaleLineId: string | null;
+  /** The day it came from another customer, and that of the written notice. */
+  givenOn: string | null;
+  noticedOn: string | null;
   was: { serial: string; toOn: string; reason: string | null }[];
 };
 
@@ -308,5 +405,7 @@ export type CoverView = {
   termsIssue: number;
   onDay: string;
   rows: CoverRow[];
+  /** Units that no clause gives a window: a person reads their terms. */
+  unread: string[];
   tree: TreePart[];
 };

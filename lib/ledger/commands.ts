@@ -178,6 +178,10 @@ export async function swapPart(
       source: "swap",
       fromOn: onDay < old.fromOn ? old.fromOn : onDay,
       replacesId: old.id,
+      swaps: [...old.swaps, onDay < old.fromOn ? old.fromOn : onDay],
+      coverSaleLineId: old.coverSaleLineId,
+      givenOn: old.givenOn,
+      noticedOn: old.noticedOn,
       createdAt: ctx.now,
     });
     await audit(ctx, {
@@ -280,6 +284,7 @@ export async function replaceSystem(
       id: saleLineId,
       unitId: newUnitId,
       lineKey: `${sale.orderNumber}|${fresh.serialKey}|${onDay}`,
+      swaps: [...sale.swaps, onDay],
       endedOn: null,
       endedReason: null,
       createdAt: ctx.now,

@@ -65,7 +65,8 @@ export type ImportState = (typeof IMPORT_STATES)[number];
 
 export const CivilDay = z
   .string()
-  .regex(/^\d{4}-\d{2}-\d{2}$/, "Give a day as year-month-day, such as 2026-03-04.");
+  .regex(/^\d{4}-\d{2}-\d{2}$/, "Give a day as year-month-day, such as 2026-03-04.")
+  .refine((day) => z.iso.date().safeParse(day).success, "There is no such day in the calendar.");
 export type CivilDay = z.output<typeof CivilDay>;
 
 export type UnitHit = {
@@ -112,6 +113,33 @@ export const MoveUnit = z.object({
   place: z.string().max(40).nullish(),
 });
 export const EndSale = z.object({ unitId: z.uuid(), onDay: CivilDay, reason: z.string().min(1) });
+export const GiveOn = z
+  .object({
+    unitId: z.uuid(),
+    accountCode: z.string().trim().min(1, "Name the account it was given to, by its code."),
+    onDay: CivilDay,
+    noticedOn: CivilDay.nullish(),
+  })
+  .refine((v) => !v.noticedOn || v.noticedOn >= v.onDay, {
+    path: ["noticedOn"],
+    message: "The notice cannot come before the day it was given on.",
+  });
+export const NoteNotice = z.object({ unitId: z.uuid(), noticedOn: CivilDay });
+export const MovePart = z.object({
+  partUnitId: z.uuid(),
+  toUnitId: z.uuid(),
+  slot: z.string().trim().min(1, "Name the slot it stands in now.").max(60),
+  onDay: CivilDay,
+  noticedOn: CivilDay.nullish(),
+});
+export const PauseCover = z
+  .object({
+    unitId: z.uuid(),
+    from: CivilDay,
+    to: CivilDay,
+    reason: z.string().trim().min(3, "Say why its cover rests.").max(200),
+  })
+  .refine((v) => v.to >= v.from, { path: ["to"], message: "The last day cannot come before the first." });
 export const ReplaceSystem = z.object({ oldUnitId: z.uuid(), newUnitId: z.uuid(), onDay: CivilDay });
 
 export type ImportView = {

@@ -1,6 +1,7 @@
-import { and, eq, isNull, sql } from "drizzle-orm";
+import { and, eq, isNull, or, sql } from "drizzle-orm";
 import { z } from "zod";
 import { transact } from "@/db/client";
+import { benchTests, photos, receiptLines } from "@/db/schema/dock";
 import { evidence } from "@/db/schema/evidence";
 import { files } from "@/db/schema/files";
 import { contacts, installations, saleLines, units } from "@/db/schema/ledger";
@@ -12,6 +13,7 @@ import { permit } from "@/lib/auth/rules";
 import { civilDayIn } from "@/lib/base/civil";
 import { parse } from "@/lib/base/parse";
 import { ok, refuse, type Result } from "@/lib/base/result";
+import { serialKey } from "@/lib/base/serial";
 import { storeDecision } from "@/lib/coverage/commands";
 import { EVIDENCE_FOR, type Decision } from "@/lib/coverage/schema";
 import { actorName, type Ctx, type TxCtx } from "@/lib/ctx";
@@ -182,6 +184,7 @@ export async function addTicketUnit(
       faultClass: v.faultClass ?? null,
       faultWords: v.faultWords,
       answers: v.answers,
+      ...(v.claimOn ? { claimOn: v.claimOn } : {}),
     };
     const [row] = await ctx.tx
       .insert(ticketUnits)
@@ -213,10 +216,31 @@ export async function tieUnit(
   if (!may.ok) return may;
   const input = parse(TieUnit, raw);
   if (!input.ok) return input;
-  const { ticketId, unitId } = input.value;
+  const { ticketId, unitId, namedIn } = input.value;
   return transact(ctx, async (ctx) => {
     const ticket = await ticketOf(ctx, ticketId);
     if (!ticket) return refuse("not_found", "This ticket is not there.");
+    let claimOn: string | null = null;
+    if (namedIn) {
+      const [entry] = await ctx.tx
+        .select({ at: entries.at })
+        .from(entries)
+        .where(
+          and(
+            eq(entries.ticketId, ticketId),
+            sql`${entries.letter}::text || ${entries.number}::text = ${namedIn}`,
+          ),
+        );
+      if (!entry)
+        return refuse("invalid", `This record has no entry ${namedIn}.`, {
+          fields: {
+            namedIn: [`This record has no entry ${namedIn}. Its references stand beside the entries.`],
+          },
+        });
+      claimOn = civilDayIn(entry.at, env().MENDBAY_ZONE);
+      // Nobody claims a unit before the ticket's own first receipt.
+      if (claimOn < ticket.claimOn) claimOn = ticket.claimOn;
+    }
     const sale = await saleCase(ctx, unitId);
     if (!sale) return refuse("rule", "This unit has no sale in the ledger. Look at the serial again.");
     if (ticket.accountId && ticket.accountId !== sale.sale.accountId) {
@@ -243,7 +267,13 @@ export async function tieUnit(
         .set({ accountId })
         .where(sql`${files.id} in (select file_id from evidence where ticket_id = ${ticketId})`);
     }
-    const tied = await addTicketUnit(ctx, { ticketId, unitId, state: "tied", faultWords: ticket.faultWords });
+    const tied = await addTicketUnit(ctx, {
+      ticketId,
+      unitId,
+      state: "tied",
+      faultWords: ticket.faultWords,
+      claimOn,
+    });
     if (!tied.ok) return tied;
     await ctx.tx
       .update(ticketUnits)
@@ -254,7 +284,7 @@ export async function tieUnit(
       ticketId,
       kind: "unit_tied",
       line: `${unit!.serial} tied to this ticket`,
-      data: { unitId, serial: unit!.serial },
+      data: { unitId, serial: unit!.serial, ...(claimOn ? { namedIn, claimOn } : {}) },
     });
     if (!entry.ok) return entry;
     await audit(ctx, { act: "ticket.tie", subject: ["ticket", ticketId], after: { unitId } });
@@ -299,7 +329,14 @@ export async function takeDecision(
   if (!input.ok) return input;
   const v = input.value;
   // What the evidence shows is a person's finding, never the claimant's.
-  const established = ctx.actor.kind === "staff" ? v.established : [];
+  const staff = ctx.actor.kind === "staff";
+  const established = staff ? v.established : [];
+  const ruledOut = staff ? v.ruledOut : [];
+  const both = established.find((x) => ruledOut.includes(x));
+  if (both)
+    return refuse("invalid", "A clause is shown or ruled out, not both.", {
+      fields: { ruledOut: ["A clause is shown or ruled out, not both. Choose one."] },
+    });
   return transact(ctx, async (ctx) => {
     const ticket = await ticketOf(ctx, v.ticketId);
     const [tied] = await ctx.tx
@@ -309,6 +346,7 @@ export async function takeDecision(
         slot: ticketUnits.slot,
         serial: units.serial,
         state: ticketUnits.state,
+        claimOn: ticketUnits.claimOn,
       })
       .from(ticketUnits)
       .innerJoin(units, eq(units.id, ticketUnits.unitId))
@@ -323,6 +361,15 @@ export async function takeDecision(
       .where(eq(evidence.ticketId, v.ticketId))
       .groupBy(evidence.kind);
     const n = (k: string) => kinds.find((x) => x.kind === k)?.n ?? 0;
+    // What dock and bench saw of this unit is evidence too.
+    const [ours] = await ctx.tx
+      .select({ n: sql<number>`count(*)::int` })
+      .from(rmaLines)
+      .innerJoin(rmas, eq(rmas.id, rmaLines.rmaId))
+      .leftJoin(receiptLines, eq(receiptLines.rmaLineId, rmaLines.id))
+      .leftJoin(benchTests, eq(benchTests.rmaLineId, rmaLines.id))
+      .innerJoin(photos, or(eq(photos.subjectId, receiptLines.id), eq(photos.subjectId, benchTests.id)))
+      .where(and(eq(rmas.ticketId, v.ticketId), eq(rmaLines.unitId, tied.unitId)));
     const [open] = await ctx.tx
       .select({ number: rmas.number })
       .from(rmaLines)
@@ -332,11 +379,21 @@ export async function takeDecision(
       ticketId: v.ticketId,
       ticketUnitId: tied.id,
       unitId: tied.unitId,
-      claimOn: ticket.claimOn,
+      claimOn: tied.claimOn ?? ticket.claimOn,
       faultClass: v.faultClass,
       what: tied.slot ? `${tied.slot.toLowerCase()}, ${tied.serial}` : tied.serial,
-      evidence: { photos: n("photo") + n("video"), logs: n("log") },
+      evidence: { photos: n("photo") + n("video") + (ours?.n ?? 0), logs: n("log") },
       established,
+      ruledOut,
+      readings: staff
+        ? {
+            powerOnHours: v.powerOnHours,
+            bytesWritten: v.terabytesWritten === undefined ? undefined : v.terabytesWritten * 1e12,
+            ...(v.logSerial
+              ? { serial: v.logSerial, serialMatches: serialKey(v.logSerial) === serialKey(tied.serial) }
+              : {}),
+          }
+        : {},
       openRma: open?.number ?? null,
     });
     if (!stored.ok) return stored;

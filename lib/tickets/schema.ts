@@ -75,14 +75,37 @@ export const AddTicketUnit = z.object({
   faultClass: z.enum(FAULT_CLASSES).nullish(),
   faultWords: z.string().max(4000).default(""),
   answers: z.record(z.string(), z.string()).default({}),
+  /** Day of the receipt that first named it, when that is not the ticket's first. */
+  claimOn: z.iso.date().nullish(),
 });
 
-export const TieUnit = z.object({ ticketId: z.uuid(), unitId: z.uuid() });
+export const TieUnit = z.object({
+  ticketId: z.uuid(),
+  unitId: z.uuid(),
+  /** Reference of the entry that first named this unit, such as M3: its day is the claim's. */
+  namedIn: z
+    .string()
+    .trim()
+    .toUpperCase()
+    .regex(/^[A-Z]\d{1,5}$/, "Give the reference of an entry, such as M3.")
+    .nullish(),
+});
+const whole = (what: string) =>
+  z.coerce
+    .number({ error: `Give the ${what} as a number.` })
+    .min(0, `There are no negative ${what}.`)
+    .max(10_000_000, `More ${what} than any drive lives; look at the log again.`);
+
 export const TakeDecision = z.object({
   ticketId: z.uuid(),
   ticketUnitId: z.uuid(),
   faultClass: z.enum(FAULT_CLASSES, { error: "Choose what kind of fault it is." }),
   established: z.array(z.string()).default([]),
+  ruledOut: z.array(z.string()).default([]),
+  /** What a person read in the log: hours and terabytes written, and the serial it names. */
+  powerOnHours: whole("hours").optional(),
+  terabytesWritten: whole("terabytes").optional(),
+  logSerial: z.string().trim().max(80).optional(),
 });
 export const Reply = z.object({
   ticketId: z.uuid(),

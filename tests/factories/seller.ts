@@ -35,7 +35,7 @@ export const DRIVE = {
   facts: { interface: "two-lane", form: "2.5 inch", media: "flash", gb: 1920 },
   dataBearing: true,
 } as const;
-const SERVER = {
+export const SERVER = {
   code: "OW-2210",
   name: "OW-2210 two-socket rack server",
   kind: "system",

@@ -1,6 +1,6 @@
 import type { ClauseFact, DecideInput } from "@/lib/coverage/schema";
 
-const clause = (
+export const clause = (
   number: string,
   kind: ClauseFact["kind"],
   title: string,
@@ -16,9 +16,17 @@ const clause = (
   startBasis: null,
   deliveryGraceDays: 0,
   dayRule: "event_day_excluded",
+  rolls: true,
+  clockStops: true,
+  replacedRule: "later_of_both",
+  transferRule: null,
   remedies: [],
   dueBackDays: null,
+  holdCents: null,
+  freight: null,
+  responseHours: null,
   enduranceHours: null,
+  enduranceTb: null,
   exclusion: null,
   evidence: [],
   feeKind: null,
@@ -68,6 +76,26 @@ export const FEE = clause("8.1", "fee", "No fault found", {
   feeCents: 4500,
   words: "If our bench finds no fault, the test costs",
 });
+export const WRITES = clause("3.4", "cover", "Written drives", {
+  families: ["drive"],
+  period: "P36M",
+  startBasis: "shipped",
+  enduranceHours: 30_000,
+  enduranceTb: 1_800,
+  remedies: ["advance_replacement"],
+  dueBackDays: 14,
+  holdCents: 25_000,
+  freight: "customer_in",
+  responseHours: 8,
+});
+export const GIVEN = clause("6.1", "transfer", "Given on", {
+  transferRule: "with_notice",
+  period: "P30D",
+});
+export const LIQUID = clause("7.3", "exclusion", "Liquid", {
+  exclusion: "liquid",
+  evidence: ["photo of the traces"],
+});
 export const CLAUSES = [DOA, SYSTEMS, DRIVES, USED, FLOOR, DAMAGE, BENT, FEE];
 
 /** A drive, shipped Monday 5 January 2026, delivered two days later, claimed in June. */
@@ -84,7 +112,9 @@ export function claim(
     claimOn: "2026-06-03",
     evidence: { photos: 0, logs: 1 },
     established: [],
+    ruledOut: [],
     readings: {},
+    earlier: [],
     openRma: null,
     week: { workdays: [1, 2, 3, 4, 5], holidays: ["2026-12-25"] },
     ...more,
@@ -92,12 +122,14 @@ export function claim(
       shippedOn: "2026-01-05",
       deliveredOn: "2026-01-07",
       invoicedOn: null,
+      installedOn: null,
       condition: "new",
       buyerKind: "business",
       country: "IE",
       pauses: [],
+      transfers: [],
       ...more.sale,
     },
-    part: { family: "drive", swappedOn: null, ...more.part },
+    part: { family: "drive", within: null, swaps: [], originKnown: true, ...more.part },
   };
 }

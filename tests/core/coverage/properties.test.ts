@@ -1,9 +1,9 @@
 import fc from "fast-check";
 import { afterEach, describe, expect, it } from "vitest";
 import { addDays } from "@/lib/base/civil";
-import { decide } from "@/lib/coverage/rules";
+import { applyChange, decide } from "@/lib/coverage/rules";
 import { FAULT_CLASSES, type DecideInput } from "@/lib/coverage/schema";
-import { claim } from "./facts";
+import { claim, CLAUSES, GIVEN } from "./facts";
 
 const day = fc.nat(3000).map((n) => addDays("2020-01-01", n));
 const pause = fc.tuple(fc.nat(900), fc.nat(40));
@@ -19,17 +19,32 @@ const anyClaim: fc.Arbitrary<DecideInput> = fc
     family: fc.constantFrom("drive", "system", "board", "fan"),
     swapped: fc.option(fc.nat(1400)),
     faultClass: fc.constantFrom(...FAULT_CLASSES),
-    after: fc.integer({ min: -20, max: 1500 }),
+    // Anywhere, and often near an end.
+    after: fc.oneof(fc.integer({ min: -20, max: 1500 }), fc.integer({ min: 1085, max: 1140 })),
     photos: fc.nat(2),
     logs: fc.nat(2),
     shown: fc.boolean(),
     hours: fc.option(fc.constantFrom(100, 30_000, 30_001, 50_000), { nil: undefined }),
     matches: fc.option(fc.boolean(), { nil: undefined }),
     openRma: fc.option(fc.constant("RMA-1207-K")),
+    given: fc.option(fc.tuple(fc.nat(1400), fc.option(fc.nat(60)))),
+    giving: fc.constantFrom("first_buyer", "with_notice", "follows_serial", null),
+    within: fc.option(fc.constant("system")),
+    ruledOut: fc.boolean(),
   })
   .map((f) =>
     claim({
+      clauses: f.giving ? [...CLAUSES, { ...GIVEN, transferRule: f.giving as "with_notice" }] : CLAUSES,
+      ruledOut: f.ruledOut ? ["liquid", "physical_damage"] : [],
       sale: {
+        transfers: f.given
+          ? [
+              {
+                on: addDays(f.shippedOn, f.given[0]),
+                noticedOn: f.given[1] === null ? null : addDays(f.shippedOn, f.given[0] + f.given[1]),
+              },
+            ]
+          : [],
         shippedOn: f.shippedOn,
         deliveredOn: f.delivered === null ? null : addDays(f.shippedOn, f.delivered),
         condition: f.condition,
@@ -39,7 +54,11 @@ const anyClaim: fc.Arbitrary<DecideInput> = fc
           to: addDays(f.shippedOn, from + n),
         })),
       },
-      part: { family: f.family, swappedOn: f.swapped === null ? null : addDays(f.shippedOn, f.swapped) },
+      part: {
+        family: f.family,
+        within: f.within,
+        swaps: f.swapped === null ? [] : [addDays(f.shippedOn, f.swapped)],
+      },
       faultClass: f.faultClass,
       claimOn: addDays(f.shippedOn, f.after),
       evidence: { photos: f.photos, logs: f.logs },
@@ -101,7 +120,7 @@ describe("any claim", () => {
         const inside = d.windows.some((w) => input.claimOn <= w.lastOn);
         if (d.outcome === "covered" || d.outcome === "covered_doa") expect(inside).toBe(true);
         if (d.outcome === "not_covered" && inside)
-          expect(d.reasons.some((r) => r.rule === "endurance" || r.rule === "exclusion_shown")).toBe(true);
+          expect(d.reasons.some((r) => /^(endurance|exclusion_shown|given_on_)/.test(r.rule))).toBe(true);
       }),
       { numRuns: 400 },
     );
@@ -109,6 +128,38 @@ describe("any claim", () => {
 });
 
 describe("what would change it", () => {
+  it("does change it, to just what is told", () => {
+    const facts = new Set<string>();
+    fc.assert(
+      fc.property(anyClaim, (input) => {
+        const d = decide(input);
+        for (const c of d.wouldChange) {
+          facts.add(c.fact);
+          if (c.patch === null) continue;
+          expect(c.to).not.toBe(d.outcome);
+          expect(decide(applyChange(input, c.patch)).outcome).toBe(c.to);
+          // And what is told can be kept and read back.
+          expect(JSON.parse(JSON.stringify(c))).toEqual(c);
+        }
+        if (d.outcome === "not_covered" || d.outcome === "needs_person")
+          expect(d.wouldChange.length).toBeGreaterThan(0);
+      }),
+      { numRuns: 3000 },
+    );
+    expect([...facts].sort()).toEqual(
+      expect.arrayContaining([
+        "earlier_report",
+        "exclusion_ruled_out",
+        "exclusion_shown",
+        "log_of_this_serial",
+        "pause",
+        "physical_damage_found",
+        "ship_day",
+        "use",
+      ]),
+    );
+  });
+
   it("names the first day of delivery that would cover it, which the engine then does", () => {
     let seen = 0;
     fc.assert(
@@ -134,7 +185,7 @@ describe("what would change it", () => {
 
   it("offers no delivery note where the day of delivery is known", () => {
     const d = decide(claim({ claimOn: "2029-01-08" }));
-    expect(d.wouldChange.map((w) => w.fact)).toEqual(["earlier_report"]);
-    expect(d.wouldChange[0]!.customer).toContain("7 January 2029");
+    expect(d.wouldChange.map((w) => w.fact)).toEqual(["pause", "earlier_report"]);
+    expect(d.wouldChange[1]!.customer).toContain("7 January 2029");
   });
 });

@@ -15,6 +15,10 @@ const part = (n: number, more: Partial<TreePart> = {}): TreePart => ({
   depth: 1,
   fromOn: "2024-03-04",
   source: "as_built",
+  swaps: [],
+  coverSaleLineId: null,
+  givenOn: null,
+  noticedOn: null,
   was: [],
   ...more,
 });
@@ -61,6 +65,7 @@ const view = (tree: TreePart[], rows: CoverRow[], claimedUnitId = "none"): Cover
   termsIssue: 2,
   onDay: "2026-11-12",
   rows,
+  unread: [],
   tree,
 });
 

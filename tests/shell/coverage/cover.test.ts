@@ -51,7 +51,8 @@ describe("a stored decision", () => {
       "covered",
       "covered_doa",
       "needs_person",
-      "not_covered",
+      // Said to be shown, with no photo on record: that is not enough.
+      "needs_person",
       "not_covered",
     ]);
     for (const d of stored) {

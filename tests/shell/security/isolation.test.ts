@@ -9,7 +9,9 @@ import { startReport } from "@/lib/evidence/commands";
 import { promiseFiles } from "@/lib/files/commands";
 import { addNote, attachEvidence, reply } from "@/lib/tickets/commands";
 import { tested } from "../../factories/returns";
-import { as, job, rows, seller, stock, unitId, type Seller } from "../../factories/seller";
+import { noteGivenOn } from "@/lib/coverage/holding.commands";
+import { as, job, rows, sell, seller, stock, unitId, type Seller } from "../../factories/seller";
+import { system } from "../../factories/shipments";
 import { freshDb } from "../db";
 
 await freshDb();
@@ -55,6 +57,22 @@ beforeAll(async () => {
   s = await seller();
   await life(s.sam, "VS19-PIN0A", "OW2210-PIN01");
   ofDana = await life(s.dana, "VS19-LOW0A", "OW2210-LOW01");
+  // Each has something that was another's once.
+  for (const [serial, order, code] of [
+    ["OW2210-GIV01", "ORD-7901", "LOWMERE"],
+    ["OW2210-GIV02", "ORD-7902", "PINNOCK"],
+  ] as const) {
+    await sell([
+      system(serial, {
+        order,
+        "account code": "TALLOW",
+        "account name": "Wren Tallow",
+        "contact name": "Wren Tallow",
+        "contact e-mail": "wren@tallow.example",
+      }),
+    ]);
+    must(await noteGivenOn(job(), { unitId: await unitId(serial), accountCode: code, onDay: "2026-05-04" }));
+  }
 });
 
 const asked = async (ctx: Ctx, query: ReturnType<typeof sql>) =>
@@ -71,7 +89,7 @@ const denied = (thrown: unknown): string => {
 };
 
 /** What every customer may read alike: our own site, models, and the terms things are sold under. */
-const COMMON = ["clause", "holiday", "model", "site", "terms", "terms_version"];
+const COMMON = ["clause", "holiday", "law_notice", "model", "site", "terms", "terms_version"];
 
 describe("two customers", () => {
   it("see no row of each other in any table that the portal may read, and rows of their own in each", async () => {

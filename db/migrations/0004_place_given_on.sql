@@ -1,0 +1,1 @@
+ALTER TABLE "installation" ADD COLUMN "given_on" date;
