@@ -7,6 +7,7 @@ export const JOBS = {
   "mail.sweep": z.object({}),
   "file.check": z.object({ fileId: z.uuid() }),
   "ledger.apply_import": z.object({ importId: z.uuid() }),
+  "terms.preview": z.object({ previewId: z.uuid() }),
 } as const;
 
 export type JobName = keyof typeof JOBS;

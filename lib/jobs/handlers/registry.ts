@@ -13,4 +13,5 @@ export const HANDLERS: { [N in JobName]?: () => Promise<{ handle: Handler<N> }> 
   "mail.sweep": () => import("./sweepMail"),
   "file.check": () => import("./checkFile"),
   "ledger.apply_import": () => import("./applyImport"),
+  "terms.preview": () => import("./preview"),
 };
