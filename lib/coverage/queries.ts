@@ -519,6 +519,8 @@ export async function coverFor(ctx: Ctx, unitId: string, onDay: string): Promise
     termsName: sale.termsName,
     termsIssue: sale.termsIssue,
     onDay,
+    pauses: sale.pauses,
+    transfers: sale.transfers,
     rows,
     unread,
     tree,
@@ -611,6 +613,28 @@ export async function differencesOf(ctx: Ctx, ticketId: string): Promise<Map<str
       return before ? [[r.id, differenceOf(before, stored.get(r.id)!)] as const] : [];
     }),
   );
+}
+
+/** What a decision about this unit would be taken on, were it claimed on a day: for trying facts, not for the record. */
+export async function freshInputs(
+  ctx: Ctx,
+  unitId: string,
+  ask: Pick<DecideInput, "what" | "claimOn" | "faultClass">,
+): Promise<DecideInput | null> {
+  const found = await saleCase(ctx, unitId);
+  const of = found && factsIn(found, unitId);
+  if (!found || !of || found.sale.endedOn !== null) return null;
+  return {
+    ...of,
+    ...ask,
+    evidence: { photos: 0, logs: 0 },
+    established: [],
+    ruledOut: [],
+    readings: {},
+    earlier: [],
+    openRma: null,
+    week: { workdays: found.site.workdays, holidays: found.site.holidays },
+  };
 }
 
 /** The inputs of one stored decision, in today's shape: what a person may try other facts on. */

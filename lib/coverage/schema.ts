@@ -405,6 +405,8 @@ export type CoverView = {
   termsIssue: number;
   onDay: string;
   rows: CoverRow[];
+  pauses: { from: string; to: string }[];
+  transfers: { on: string; noticedOn: string | null }[];
   /** Units that no clause gives a window: a person reads their terms. */
   unread: string[];
   tree: TreePart[];

@@ -324,6 +324,14 @@ export async function find(ctx: Ctx, raw: string): Promise<Found> {
 }
 
 /** The record's facts in order, for recomputing what is derived. */
+/** The number people say, of a ticket by its id. Null when it is not there for the one who asks. */
+export async function ticketNumberOf(ctx: Ctx, ticketId: string): Promise<number | null> {
+  const [row] = await read(ctx, (tx) =>
+    tx.select({ number: tickets.number }).from(tickets).where(eq(tickets.id, ticketId)).limit(1),
+  );
+  return row?.number ?? null;
+}
+
 export async function entryFacts(ctx: Ctx, ticketId: string) {
   return read(ctx, (tx) =>
     tx

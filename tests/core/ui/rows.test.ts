@@ -65,6 +65,8 @@ const view = (tree: TreePart[], rows: CoverRow[], claimedUnitId = "none"): Cover
   termsIssue: 2,
   onDay: "2026-11-12",
   rows,
+  pauses: [],
+  transfers: [],
   unread: [],
   tree,
 });

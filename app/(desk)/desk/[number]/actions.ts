@@ -53,7 +53,11 @@ export const tie = act(async (ctx, input) => {
       });
     unitId = hit.unitId;
   }
-  return tieUnit(ctx, { ticketId: text(input.ticketId), unitId });
+  return tieUnit(ctx, {
+    ticketId: text(input.ticketId),
+    unitId,
+    ...(text(input.namedIn) ? { namedIn: text(input.namedIn) } : {}),
+  });
 });
 
 export const dismiss = act(async (ctx, input) => {
@@ -61,14 +65,20 @@ export const dismiss = act(async (ctx, input) => {
   return done.ok ? ok({ ref: "newest" }) : done;
 });
 
-export const decide = act((ctx, input) =>
-  takeDecision(ctx, {
+export const decide = act((ctx, input) => {
+  const found = Object.entries((input.finding ?? {}) as Record<string, unknown>);
+  const names = (value: string) => found.filter(([, v]) => v === value).map(([name]) => name);
+  return takeDecision(ctx, {
     ticketId: text(input.ticketId),
     ticketUnitId: text(input.ticketUnitId),
     faultClass: text(input.faultClass) as never,
-    established: list(input.established),
-  }),
-);
+    established: names("shown"),
+    ruledOut: names("ruled_out"),
+    powerOnHours: input.powerOnHours,
+    terabytesWritten: input.terabytesWritten,
+    ...(text(input.logSerial) ? { logSerial: text(input.logSerial) } : {}),
+  });
+});
 
 export const authorize = act((ctx, input) =>
   authorizeRma(ctx, {

@@ -4,10 +4,13 @@ import { UNSENT, type FormState } from "@/app/_edge/form";
 import { Button } from "@/components/ui/button";
 import { ErrorSummary } from "@/components/ui/error-summary";
 import { Check, Choice, ChoiceGroup, Field, Select, TextArea } from "@/components/ui/field";
-import { FAULT_CLASSES, FAULT_WORDS, REMEDY_WORDS, type Outcome, type Remedy } from "@/lib/coverage/schema";
-import { authorize, close, decide, decline, tie } from "./actions";
+import { REMEDY_WORDS, type Outcome, type Remedy } from "@/lib/coverage/schema";
+import { authorize, close, decline } from "./actions";
+import { DecideForm, type Known } from "./decide-form";
+import { Hidden, problems } from "./form-parts";
+import { TieForm } from "./tie-form";
 
-type UnitAct = {
+export type UnitAct = {
   ticketUnitId: string;
   serial: string;
   what: string;
@@ -15,28 +18,19 @@ type UnitAct = {
   decision: { outcome: Outcome; remedies: Remedy[]; fees: string[]; headline: string } | null;
   rmaNumber: string | null;
 };
-type Props = { ticketId: string; number: number; closed: boolean; units: UnitAct[] };
-
-const EXCLUDABLE = ["bent_contacts", "physical_damage", "liquid"];
-
-function Hidden({ ticketId, number }: { ticketId: string; number: number }) {
-  return (
-    <>
-      <input type="hidden" name="ticketId" value={ticketId} />
-      <input type="hidden" name="number" value={number} />
-    </>
-  );
-}
-
-function problems(state: FormState<unknown>) {
-  const list = Object.entries(state.fields ?? {}).flatMap(([field, messages]) =>
-    messages.map((message) => ({ field, message })),
-  );
-  return list.length > 0 ? list : state.message && !state.ok ? [{ message: state.message }] : [];
-}
+type Props = {
+  ticketId: string;
+  number: number;
+  closed: boolean;
+  units: UnitAct[];
+  /** Day of the ticket's first receipt. */
+  firstDay: string;
+  /** What the newest decision knew, so that deciding again starts from there. */
+  known: Known | null;
+};
 
 /** The next acts of a ticket, in the order they are done. What cannot be done yet says why. */
-export function Acts({ ticketId, number, closed, units }: Props) {
+export function Acts({ ticketId, number, closed, units, firstDay, known }: Props) {
   const first = units[0];
   const decided = units.filter((u) => u.decision);
   const covered = decided.filter(
@@ -94,79 +88,16 @@ export function Acts({ ticketId, number, closed, units }: Props) {
           </Button>
         )}
       </div>
-      {open === "tie" ? <TieForm ticketId={ticketId} number={number} /> : null}
-      {open === "decide" ? <DecideForm ticketId={ticketId} number={number} units={units} /> : null}
+      {open === "tie" ? <TieForm ticketId={ticketId} number={number} firstDay={firstDay} /> : null}
+      {open === "decide" ? (
+        <DecideForm ticketId={ticketId} number={number} units={units} known={known} />
+      ) : null}
       {open === "authorize" ? (
         <AuthorizeForm ticketId={ticketId} number={number} units={authorizable} />
       ) : null}
       {open === "decline" ? <DeclineForm ticketId={ticketId} number={number} units={decided} /> : null}
       {open === "close" ? <CloseForm ticketId={ticketId} number={number} /> : null}
     </section>
-  );
-}
-
-function TieForm({ ticketId, number }: { ticketId: string; number: number }) {
-  const [state, send, busy] = useActionState(tie, UNSENT as FormState<never>);
-  return (
-    <form action={send} className="actform">
-      <ErrorSummary title="Not tied" items={problems(state)} />
-      <Hidden ticketId={ticketId} number={number} />
-      <Field
-        label="Serial of the unit or part"
-        name="serial"
-        mono
-        hint="Scan it, or type it as printed."
-        error={state.fields?.serial?.[0]}
-        defaultValue={String(state.values?.serial ?? "")}
-        key={String(state.values?.serial ?? "")}
-        autoComplete="off"
-        autoFocus
-      />
-      <Button aria-disabled={busy}>Tie this unit</Button>
-    </form>
-  );
-}
-
-function DecideForm({ ticketId, number, units }: { ticketId: string; number: number; units: UnitAct[] }) {
-  const [state, send, busy] = useActionState(decide, UNSENT as FormState<never>);
-  const [fault, setFault] = useState(units[0]?.faultClass ?? "");
-  return (
-    <form action={send} className="actform">
-      <ErrorSummary title="No decision was taken" items={problems(state)} />
-      <Hidden ticketId={ticketId} number={number} />
-      {units.length > 1 ? (
-        <Select
-          label="For which unit"
-          name="ticketUnitId"
-          options={units.map((u) => ({ value: u.ticketUnitId, label: `${u.serial}, ${u.what}` }))}
-        />
-      ) : (
-        <input type="hidden" name="ticketUnitId" value={units[0]?.ticketUnitId ?? ""} />
-      )}
-      <Select
-        label="Kind of fault"
-        name="faultClass"
-        error={state.fields?.faultClass?.[0]}
-        value={fault}
-        onChange={(e) => setFault(e.target.value)}
-        options={[
-          { value: "", label: "Choose" },
-          ...FAULT_CLASSES.map((c) => ({ value: c, label: FAULT_WORDS[c] })),
-        ]}
-      />
-      {EXCLUDABLE.includes(fault) ? (
-        <Check
-          name="established"
-          value={fault}
-          title="The evidence shows it, and I have compared it with our own photos."
-          detail="Without this the decision is: needs a person."
-        />
-      ) : null}
-      <Button aria-disabled={busy}>{busy ? "Deciding" : "Decide and keep it"}</Button>
-      <p className="hint">
-        The rules decide by the clause, the dates and the evidence. It is kept as it was made.
-      </p>
-    </form>
   );
 }
 

@@ -9,7 +9,7 @@ import { DueClock } from "@/components/tickets/due";
 import { Tag } from "@/components/ui/tag";
 import { may } from "@/lib/auth/rules";
 import { civilDayIn } from "@/lib/base/civil";
-import { coverFor, decisionsOf } from "@/lib/coverage/queries";
+import { coverFor, decisionInputs, decisionsOf, differencesOf } from "@/lib/coverage/queries";
 import { evidenceOf } from "@/lib/evidence/queries";
 import { defaultSite } from "@/lib/ledger/queries";
 import { rmasOfTicket } from "@/lib/rma/queries";
@@ -46,11 +46,14 @@ export default async function Ticket({
   const proposed = t.units.filter((u) => u.state === "proposed" && !answered.has(u.unitId));
   const main = tied[0] ?? proposed[0];
   const view = main ? await coverFor(ctx, main.unitId, today) : null;
-  const [evidence, decisions, rmas] = [
+  const [evidence, decisions, differences, rmas] = [
     await evidenceOf(ctx, t.id),
     await decisionsOf(ctx, t.id),
+    await differencesOf(ctx, t.id),
     await rmasOfTicket(ctx, t.id),
   ];
+  const newest = decisions.at(-1);
+  const known = newest ? await decisionInputs(ctx, newest.id) : null;
   const clock = clockView(t, ctx.now, site);
   const rma = rmas[0];
   const done = (await searchParams).done;
@@ -133,6 +136,7 @@ export default async function Ticket({
             messages={t.messages}
             evidence={evidence}
             decisions={decisions}
+            differences={differences}
             rmas={rmas}
             zone={site.zone}
           />
@@ -142,6 +146,19 @@ export default async function Ticket({
                 ticketId={t.id}
                 number={t.number}
                 closed={t.closedAt !== null}
+                firstDay={t.claimOn}
+                known={
+                  known
+                    ? {
+                        ticketUnitId: newest!.ticketUnitId ?? "",
+                        established: known.established,
+                        ruledOut: known.ruledOut,
+                        powerOnHours: known.readings.powerOnHours ?? null,
+                        terabytes: known.readings.bytesWritten ? known.readings.bytesWritten / 1e12 : null,
+                        logSerial: known.readings.serial ?? null,
+                      }
+                    : null
+                }
                 units={tied.map((u) => {
                   const d = decisions.filter((x) => x.ticketUnitId === u.id).at(-1);
                   return {

@@ -2,6 +2,8 @@ import { Fragment, type ReactNode } from "react";
 import { Folded, RecordEntry } from "@/components/tickets/entry";
 import { Tag } from "@/components/ui/tag";
 import { showBytes, showDay, showWait } from "@/lib/base/show";
+import { DecisionBody } from "@/components/coverage/decision";
+import type { Difference } from "@/lib/coverage/difference";
 import type { DecisionView } from "@/lib/coverage/queries";
 import { REMEDY_WORDS, type Remedy } from "@/lib/coverage/schema";
 import { TEST_OUTCOME_WORDS, type TestOutcome } from "@/lib/dock/schema";
@@ -15,6 +17,8 @@ type Props = {
   messages: Record<string, MessageView>;
   evidence: EvidenceView[];
   decisions: DecisionView[];
+  /** What each decision says that the one before it, for the same unit, did not. */
+  differences: ReadonlyMap<string, Difference>;
   rmas: RmaView[];
   zone: string;
 };
@@ -112,7 +116,7 @@ function Files({ files }: { files: EvidenceView[] }) {
   );
 }
 
-export function Record({ entries, messages, evidence, decisions, rmas, zone }: Props) {
+export function Record({ entries, messages, evidence, decisions, differences, rmas, zone }: Props) {
   const refs = new Set(entries.map((e) => e.ref));
   const str = (v: unknown) => (typeof v === "string" ? v : "");
   const body = (
@@ -177,7 +181,16 @@ export function Record({ entries, messages, evidence, decisions, rmas, zone }: P
           by: d?.madeByName === "Mendbay" ? "by the rules, shown to the customer" : e.actorName,
           right: d ? `clause ${d.answer.clauseNumber ?? "none"}, engine ${d.engine}` : undefined,
           kind: "decision",
-          children: d ? <DecisionBody d={d} /> : <p>{e.line}</p>,
+          children: d ? (
+            <>
+              <DecisionBody answer={d.answer} difference={differences.get(d.id)} />
+              <p className="q">
+                <a href={`/desk/what-if/${d.id}`}>What if a fact were other?</a>
+              </p>
+            </>
+          ) : (
+            <p>{e.line}</p>
+          ),
         };
       }
       case "rma_authorized":
@@ -310,44 +323,5 @@ function Pictures({ ids }: { ids: unknown }) {
         </figure>
       ))}
     </div>
-  );
-}
-
-const FILL: Record<string, string> = {
-  covered: "g",
-  covered_doa: "g doa",
-  not_covered: "g end",
-  needs_person: "g per",
-};
-
-function DecisionBody({ d }: { d: DecisionView }) {
-  const a = d.answer;
-  return (
-    <>
-      <div className="verdict">
-        <i className={FILL[a.outcome]} aria-hidden="true" />
-        <div className="v">{a.headline.staff}</div>
-      </div>
-      <dl className="why">
-        {a.reasons.map((r) => (
-          <Fragment key={r.rule}>
-            <dt>{r.clause ? `Clause ${r.clause}` : "Finding"}</dt>
-            <dd>{r.staff}</dd>
-          </Fragment>
-        ))}
-        {a.wouldChange.length > 0 ? (
-          <>
-            <dt>Would change it</dt>
-            <dd>{a.wouldChange.map((w) => w.staff).join(" ")}</dd>
-          </>
-        ) : null}
-        {a.evidenceWanted.length > 0 ? (
-          <>
-            <dt>Not yet here</dt>
-            <dd>{a.evidenceWanted.join(", ")}</dd>
-          </>
-        ) : null}
-      </dl>
-    </>
   );
 }

@@ -7,6 +7,7 @@ import { coverNodes, rulerRows } from "@/components/coverage/rows";
 import { Ruler } from "@/components/coverage/ruler";
 import { CoverTree } from "@/components/coverage/tree";
 import { Tag } from "@/components/ui/tag";
+import { may } from "@/lib/auth/rules";
 import { civilDayIn } from "@/lib/base/civil";
 import { showDay } from "@/lib/base/show";
 import { coverFor } from "@/lib/coverage/queries";
@@ -14,6 +15,7 @@ import { env } from "@/lib/env";
 import { salesOf, unitBySerial } from "@/lib/ledger/queries";
 import { find } from "@/lib/tickets/queries";
 import { placeWords } from "../words";
+import { Holding } from "./holding";
 
 export async function generateMetadata({
   params,
@@ -23,8 +25,15 @@ export async function generateMetadata({
   return { title: serialInPath((await params).serial) };
 }
 
-export default async function UnitPage({ params }: { params: Promise<{ serial: string }> }) {
+export default async function UnitPage({
+  params,
+  searchParams,
+}: {
+  params: Promise<{ serial: string }>;
+  searchParams: Promise<{ noted?: string }>;
+}) {
   const ctx = await requireStaff();
+  const mayNote = may(ctx, "ledger.give_on");
   const unit = await unitBySerial(ctx, serialInPath((await params).serial));
   if (!unit) notFound();
   const today = civilDayIn(ctx.now, env().MENDBAY_ZONE);
@@ -111,6 +120,41 @@ export default async function UnitPage({ params }: { params: Promise<{ serial: s
               </a>
               .
             </p>
+          ) : null}
+          {view && view.pauses.length + view.transfers.length > 0 ? (
+            <ul className="plist">
+              {view.transfers.map((t) => (
+                <li key={t.on}>
+                  Given on on {showDay(t.on)}
+                  {t.noticedOn
+                    ? `, with written notice of ${showDay(t.noticedOn)}`
+                    : ", no written notice yet"}
+                </li>
+              ))}
+              {view.pauses.map((p) => (
+                <li key={p.from}>
+                  Cover rested from {showDay(p.from)} to {showDay(p.to)}
+                </li>
+              ))}
+            </ul>
+          ) : null}
+          {mayNote && (unit.accountId || unit.systemSerial) ? (
+            <>
+              <div className="sec">
+                <h2>What has become of it</h2>
+                {(await searchParams).noted ? (
+                  <span className="r ok" role="status">
+                    Noted; its cover follows.
+                  </span>
+                ) : null}
+              </div>
+              <Holding
+                unit={{ unitId: unit.unitId, serial: unit.serial }}
+                sold={sales.some((s) => s.endedOn === null)}
+                part={unit.systemSerial !== null}
+                waits={view?.transfers.some((t) => t.noticedOn === null) ?? false}
+              />
+            </>
           ) : null}
         </section>
         <aside className="built" aria-label="As built, and since">
