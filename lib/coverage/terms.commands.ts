@@ -342,7 +342,7 @@ export async function publishDraft(
     if (!of) return refuse("not_found", "This draft is not there. It may have been thrown away.");
     const draft = await draftFor(ctx, v);
     if (!draft.ok) return draft;
-    const { effectiveOn, note } = draft.value;
+    const { issue, effectiveOn, note } = draft.value;
     const list = inOrder((await clausesOf(ctx.tx, v.versionId)).map(bare));
     const problems = checkTerms(list);
     if (problems.length > 0)
@@ -362,19 +362,11 @@ export async function publishDraft(
     const change = comparisonWords(compareTerms(before, list));
     if (last && change === null)
       return refuse("rule", `Nothing differs from issue ${last.issue}: there is nothing to publish.`);
-    // The door for imports may have published an issue meanwhile; this one comes after it.
-    const [newest] = await ctx.tx
-      .select({ issue: termsVersions.issue })
-      .from(termsVersions)
-      .where(and(eq(termsVersions.termsId, of.id), ne(termsVersions.id, v.versionId)))
-      .orderBy(desc(termsVersions.issue))
-      .limit(1);
-    const issue = Math.max(draft.value.issue, (newest?.issue ?? 0) + 1);
     await ctx.tx
       .update(termsPreviews)
       .set({ state: "cancelled", error: "The draft was published.", finishedAt: ctx.now })
       .where(and(eq(termsPreviews.termsVersionId, v.versionId), eq(termsPreviews.state, "running")));
-    await bump(ctx, draft.value, { issue, publishedAt: ctx.now });
+    await bump(ctx, draft.value, { publishedAt: ctx.now });
     await audit(ctx, {
       act: "terms.publish",
       subject: ["terms_version", v.versionId],
