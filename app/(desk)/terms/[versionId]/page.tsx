@@ -2,88 +2,139 @@ import Link from "next/link";
 import type { Metadata } from "next";
 import { notFound } from "next/navigation";
 import { requireStaff } from "@/app/_edge/ctx";
-import { periodWords } from "@/lib/base/period";
-import { showDay } from "@/lib/base/show";
-import { termsVersion } from "@/lib/coverage/queries";
-import { REMEDY_WORDS, type ClauseFact } from "@/lib/coverage/schema";
-import { FAMILY_WORDS, type Family } from "@/lib/ledger/schema";
+import { Button } from "@/components/ui/button";
+import { Pin } from "@/components/ui/pin";
+import { may } from "@/lib/auth/rules";
+import { civilDayIn } from "@/lib/base/civil";
+import { plural, showDay } from "@/lib/base/show";
+import { CLAUSE_KINDS, type ClauseKind } from "@/lib/coverage/schema";
+import { newestPreview, salesUnder, termsIssue } from "@/lib/coverage/terms.queries";
+import { checkTerms } from "@/lib/coverage/terms";
+import { compareTerms } from "@/lib/coverage/termwords";
+import { env } from "@/lib/env";
+import { next } from "../actions";
+import { ClauseList } from "./clauses";
+import { Compare } from "./compare";
+import { DraftEnd, HeadForm } from "./head";
+import { PreviewPart } from "./preview-part";
 
 export const metadata: Metadata = { title: "Terms" };
 const UUID = /^[0-9a-f]{8}(-[0-9a-f]{4}){3}-[0-9a-f]{12}$/;
 
-const BASIS = {
-  shipped: "the ship day",
-  delivered: "delivery",
-  invoiced: "the invoice day",
-  installed: "the day it is fitted",
-} as const;
-
-function rule(c: ClauseFact): string {
-  if (c.kind === "exclusion")
-    return `Left out once ${c.evidence.join(" and ") || "evidence"} shows it; without that a person decides.`;
-  if (c.kind === "fee")
-    return `${((c.feeCents ?? 0) / 100).toFixed(2)} EUR, only with notice on the authorization; never for a consumer’s faulty unit.`;
-  if (!c.period) return c.words;
-  const from = c.startBasis ? `from ${BASIS[c.startBasis]}` : "";
-  const grace =
-    c.startBasis === "delivered" && c.deliveryGraceDays > 0
-      ? ` (ship day and ${c.deliveryGraceDays} days without proof)`
-      : "";
-  const day = c.dayRule === "event_day_excluded" ? "that day not counted" : "that day counted";
-  const hours = c.enduranceHours
-    ? `, or ${c.enduranceHours.toLocaleString("en-US")} hours, whichever is first`
-    : "";
-  return `${periodWords(c.period)} ${from}${grace}, ${day}${hours}.`;
-}
-
-export default async function TermsVersion({ params }: { params: Promise<{ versionId: string }> }) {
+export default async function TermsVersion({
+  params,
+  searchParams,
+}: {
+  params: Promise<{ versionId: string }>;
+  searchParams: Promise<Record<string, string | string[] | undefined>>;
+}) {
   const ctx = await requireStaff();
   const { versionId } = await params;
-  const v = UUID.test(versionId) ? await termsVersion(ctx, versionId) : null;
+  const query = await searchParams;
+  const v = UUID.test(versionId) ? await termsIssue(ctx, versionId) : null;
   if (!v) notFound();
+  const draft = v.publishedAt === null;
+  const writes = draft && may(ctx, "terms.write");
+  const today = civilDayIn(ctx.now, env().MENDBAY_ZONE);
+  const inForce = v.published.find((p) => p.effectiveOn <= today)?.id === v.id;
+  const rows = compareTerms(v.before?.clauses ?? [], v.clauses);
+  const problems = draft ? checkTerms(v.clauses) : [];
+  const one = (name: string) => (typeof query[name] === "string" ? query[name] : undefined);
+  const kind = CLAUSE_KINDS.find((k) => k === one("kind"));
+  const sold = draft ? null : await salesUnder(ctx, { versionId, termsId: v.termsId, fromOn: v.effectiveOn });
   return (
-    <main className="desk narrow" id="main">
+    <main className="desk narrow terms" id="main">
       <div className="deskhead">
-        <div>
+        <div className="issuehead" aria-current={inForce ? "true" : undefined}>
+          {inForce ? <Pin size={14} /> : null}
           <h1>
-            {v.name}, issue {v.issue}
+            {v.name}, {draft ? `draft of issue ${v.issue}` : `issue ${v.issue}`}
           </h1>
           <p>
-            <span className="m">{v.code}</span>, from {showDay(v.effectiveOn)}.{" "}
-            {v.publishedAt ? "Published: it never changes." : "A draft."} {v.note}
+            <span className="m">{v.code}</span>,{" "}
+            {draft
+              ? `${v.before ? `drafted from issue ${v.before.issue}` : "new terms"}; last changed by ${v.madeByName || "somebody"}.`
+              : `from ${showDay(v.effectiveOn)}${inForce ? ", in force" : v.effectiveOn > today ? ", to come" : ""}. Published${v.madeByName ? ` by ${v.madeByName}` : ""}: it never changes.`}{" "}
+            {sold
+              ? `${sold.under === 0 ? "Nothing was sold" : `${sold.under.toLocaleString("en-US")} ${plural(sold.under, "sale was", "sales were")} made`} under it. `
+              : ""}
+            {draft ? "" : v.note}
           </p>
         </div>
+        {!draft && may(ctx, "terms.write") ? (
+          v.draftId ? (
+            <Link href={`/terms/${v.draftId}`}>Open the draft of the next issue</Link>
+          ) : (
+            <form action={next}>
+              <input type="hidden" name="termsId" value={v.termsId} />
+              <Button kind="line">Draft the next issue</Button>
+            </form>
+          )
+        ) : null}
       </div>
-      <div className="tablewrap" role="region" aria-label="Clauses" tabIndex={0}>
-        <table className="tbl">
-          <thead>
-            <tr>
-              <th scope="col">Clause</th>
-              <th scope="col">About</th>
-              <th scope="col">Parts</th>
-              <th scope="col">Rule</th>
-              <th scope="col">Remedies, in order</th>
-            </tr>
-          </thead>
-          <tbody>
-            {v.clauses.map((c) => (
-              <tr key={c.id}>
-                <td className="m">{c.number}</td>
-                <td>{c.title}</td>
-                <td>
-                  {c.families.length === 0
-                    ? "every part"
-                    : c.families.map((f) => FAMILY_WORDS[f as Family].toLowerCase()).join(", ")}
-                  {c.condition ? `, ${c.condition}` : ""}
-                </td>
-                <td>{rule(c)}</td>
-                <td>{c.remedies.map((r) => REMEDY_WORDS[r]).join(", ") || "–"}</td>
-              </tr>
+      {draft && problems.length > 0 && v.clauses.length > 0 ? (
+        <section className="stops" aria-labelledby="stops-h">
+          <h2 id="stops-h">
+            {problems.length === 1
+              ? "One thing keeps it from being published"
+              : `${problems.length} things keep it from being published`}
+          </h2>
+          <ul>
+            {problems.map((p, i) => (
+              <li key={i}>
+                {p.index >= 0 && writes ? (
+                  <Link href={`/terms/${v.id}?clause=${v.clauses[p.index]!.id}#open`}>Clause {p.number}</Link>
+                ) : p.number ? (
+                  `Clause ${p.number}`
+                ) : null}
+                {p.number ? ": " : ""}
+                {p.message}
+              </li>
             ))}
-          </tbody>
-        </table>
-      </div>
-      <p className="q">
+          </ul>
+        </section>
+      ) : null}
+      <ClauseList
+        of={v}
+        rows={rows}
+        writes={writes}
+        open={writes ? one("clause") : undefined}
+        kind={kind as ClauseKind | undefined}
+      />
+      {v.before ? (
+        <Compare rows={rows} before={v.before} draft={draft} />
+      ) : (
+        <p className="q">
+          {draft
+            ? "There is no issue before it to compare with."
+            : "It is the first issue: there is none before it to compare with."}
+        </p>
+      )}
+      {draft ? (
+        <>
+          <PreviewPart
+            of={v}
+            preview={await newestPreview(ctx, v.id)}
+            writes={writes}
+            show={one("show")}
+            zone={env().MENDBAY_ZONE}
+            now={ctx.now}
+          />
+          {writes ? (
+            <>
+              <HeadForm
+                versionId={v.id}
+                version={v.version}
+                effectiveOn={v.effectiveOn}
+                note={v.note}
+                after={v.before ? showDay(v.before.effectiveOn) : null}
+              />
+              <DraftEnd versionId={v.id} version={v.version} issue={v.issue} problems={problems.length} />
+            </>
+          ) : null}
+        </>
+      ) : null}
+      <p className="q lawline">
         Rights by law may stand beside these terms and come first; the desk warns of them and does not decide
         them.
       </p>
