@@ -9,7 +9,7 @@ import { parse } from "@/lib/base/parse";
 import { ok, refuse, type Refused, type Result } from "@/lib/base/result";
 import { actorName, type Ctx, type TxCtx } from "@/lib/ctx";
 import { env } from "@/lib/env";
-import { CONDITIONS, FAMILIES } from "@/lib/ledger/schema";
+import { CONDITIONS } from "@/lib/ledger/schema";
 import {
   CLAUSE_KINDS,
   DAY_RULES,
@@ -30,8 +30,11 @@ const Code = z
   .regex(/^[A-Z0-9][A-Z0-9-]{1,19}$/, "Use 2 to 20 capitals, digits and dashes.");
 const Name = z.string().trim().min(1, "Give the terms a name.").max(80, "Keep it within 80 characters.");
 const Version = z.object({ versionId: z.uuid(), version: z.coerce.number().int() });
-const number = z.number({ error: "Give a whole number." }).nullish();
-const money = z.number({ error: "Give an amount such as 250.00." }).nullish();
+/** What is no number stays as typed: checkTerms tells of it beside everything else that is wrong. */
+const number = z
+  .union([z.number(), z.string()])
+  .nullish()
+  .transform((v) => v as number | null | undefined);
 
 export const KeepClause = Version.extend({
   /** None: a new clause. */
@@ -39,7 +42,7 @@ export const KeepClause = Version.extend({
   number: z.string({ error: "Number clauses like 3 or 3.1." }).trim(),
   kind: z.enum(CLAUSE_KINDS, { error: "Choose what kind of clause it is." }),
   title: z.string({ error: "Say in a few words what the clause is about." }).trim(),
-  families: z.array(z.enum(FAMILIES), { error: "Tick the parts it is for, or choose every part." }),
+  families: z.array(z.string()),
   condition: z.enum(CONDITIONS).nullish(),
   period: z.string().trim().toUpperCase().nullish(),
   startBasis: z.enum(START_BASES, { error: "Say which day the period runs from." }).nullish(),
@@ -51,7 +54,7 @@ export const KeepClause = Version.extend({
   transferRule: z.enum(TRANSFER_RULES).nullish(),
   remedies: z.array(z.enum(REMEDIES)).nullish(),
   dueBackDays: number,
-  holdCents: money,
+  holdCents: number,
   freight: z.enum(FREIGHT_RULES).nullish(),
   responseHours: number,
   enduranceHours: number,
@@ -59,7 +62,7 @@ export const KeepClause = Version.extend({
   exclusion: z.string().nullish(),
   evidence: z.array(z.string().trim()).nullish(),
   feeKind: z.string().nullish(),
-  feeCents: money,
+  feeCents: number,
   words: z.string().trim().nullish(),
 });
 

@@ -148,7 +148,8 @@ function ownProblems(c: TermsClause): [field: ClauseField, message: string][] {
   if (c.words.length > BOUNDS.words) no("words", `Keep it within ${BOUNDS.words} characters.`);
 
   const stranger = c.families.find((f) => !FAMILIES.includes(f as Family));
-  if (stranger !== undefined) no("families", `There is no part family “${stranger}”.`);
+  if (stranger === "") no("families", "Tick the parts it is for, or choose every part.");
+  else if (stranger !== undefined) no("families", `There is no part family “${stranger}”.`);
   const twice = repeated(c.families);
   if (twice !== undefined) no("families", `The family ${familyWords(twice)} is named twice.`);
   if (c.condition !== null && !(CONDITIONS as readonly string[]).includes(c.condition))

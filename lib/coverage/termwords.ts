@@ -56,7 +56,8 @@ export function clauseWords(c: TermsClause): string {
   switch (c.kind) {
     case "exclusion":
       said.push(
-        `Leaves out ${named(EXCLUSION_WORDS, c.exclusion ?? "")} once ${list(c.evidence) || "evidence"} shows it; without that a person decides`,
+        `Leaves out ${named(EXCLUSION_WORDS, c.exclusion ?? "")} once evidence shows it: ${list(c.evidence)}`,
+        "Without that a person decides",
       );
       break;
     case "fee":

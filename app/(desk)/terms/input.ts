@@ -28,8 +28,7 @@ export function clauseInput(input: Record<string, unknown>): Record<string, unkn
     kind: input.kind,
     title: text(input.title) ?? "",
     // Only with the choice made: a form whose ticks were all taken away must not come to mean every part.
-    families:
-      input.parts === "named" ? (input.families === undefined ? undefined : list(input.families)) : [],
+    families: input.parts === "named" ? (input.families === undefined ? [""] : list(input.families)) : [],
     condition: text(input.condition),
     period: text(input.period),
     startBasis: text(input.startBasis),

@@ -413,7 +413,7 @@ describe("the rule of a clause in words", () => {
     ],
     [
       exclusion("7.1"),
-      "Leaves out liquid inside once photo of the traces shows it; without that a person decides.",
+      "Leaves out liquid inside once evidence shows it: photo of the traces. Without that a person decides.",
     ],
     [
       transfer({ period: "P30D", rolls: false }),

@@ -132,9 +132,16 @@ describe("a draft", () => {
           ],
         },
       ],
+      [
+        { period: "P0D", dueBackDays: "soon" },
+        {
+          period: ["A period must be longer than nothing."],
+          dueBackDays: ["Give a whole number from 1 to 120."],
+        },
+      ],
       [{ number: "3.3" }, { number: ["Clause 3.3 is there already."] }],
-      [{ holdCents: "much" }, { holdCents: ["Give an amount such as 250.00."] }],
-      [{ families: undefined }, { families: ["Tick the parts it is for, or choose every part."] }],
+      [{ holdCents: "much" }, { holdCents: ["Give an amount from 0.01 to 100,000."] }],
+      [{ families: [""] }, { families: ["Tick the parts it is for, or choose every part."] }],
     ] as const)
       expect(await put(versionId, "3.2", more)).toMatchObject({
         ok: false,

@@ -25,7 +25,7 @@ type Props = {
 
 const PERIOD: Record<ClauseKind, [label: string, hint: string]> = {
   doa: ["Window", "Such as P30D: thirty days."],
-  cover: ["Period", "Such as P36M, P1Y6M or P90D. Whole parts only."],
+  cover: ["Period", "Such as P36M or P90D."],
   replaced_part: [
     "Floor",
     "From the swap, such as P90D. Empty where only the rest of the first cover counts.",
@@ -137,7 +137,7 @@ export function ClauseForm(props: Props) {
             />
           ) : null}
           {has("startBasis") ? (
-            <Select label="Runs from" hint="Not known: from the ship day." {...pick("startBasis")} />
+            <Select label="Runs from" hint="Not known: the ship day." {...pick("startBasis")} />
           ) : null}
           {has("deliveryGraceDays") ? (
             <Field

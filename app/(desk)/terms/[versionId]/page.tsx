@@ -6,7 +6,7 @@ import { Button } from "@/components/ui/button";
 import { Pin } from "@/components/ui/pin";
 import { may } from "@/lib/auth/rules";
 import { civilDayIn } from "@/lib/base/civil";
-import { plural, showDay } from "@/lib/base/show";
+import { capital, countWord, plural, showDay } from "@/lib/base/show";
 import { CLAUSE_KINDS, type ClauseKind } from "@/lib/coverage/schema";
 import { newestPreview, salesUnder, termsIssue } from "@/lib/coverage/terms.queries";
 import { checkTerms } from "@/lib/coverage/terms";
@@ -77,7 +77,7 @@ export default async function TermsVersion({
           <h2 id="stops-h">
             {problems.length === 1
               ? "One thing keeps it from being published"
-              : `${problems.length} things keep it from being published`}
+              : `${capital(countWord(problems.length))} things keep it from being published`}
           </h2>
           <ul>
             {problems.map((p, i) => (
