@@ -258,6 +258,32 @@ const EXCLUSIONS: Clause[] = [
     evidence: ["photo of the traces"],
     words: "Liquid inside.",
   },
+  {
+    number: "7.4",
+    kind: "exclusion",
+    title: "Unauthorized change",
+    exclusion: "unauthorized_change",
+    evidence: ["version read-out in a log"],
+    words: "Firmware or parts changed in a way we did not allow.",
+  },
+  {
+    number: "7.5",
+    kind: "exclusion",
+    title: "Altered label",
+    exclusion: "altered_label",
+    evidence: ["photo of the label"],
+    words: "A serial label that was changed or moved from another unit.",
+  },
+];
+const GIVEN_ON: Clause[] = [
+  {
+    number: "6.1",
+    kind: "transfer",
+    title: "Given on to another company",
+    transferRule: "with_notice",
+    period: "P30D",
+    words: "Cover goes along when we are told in writing within thirty days.",
+  },
 ];
 const FEES: Clause[] = [
   {
@@ -267,6 +293,14 @@ const FEES: Clause[] = [
     feeKind: "no_fault_found",
     feeCents: 4500,
     words: "If our bench finds no fault, the test costs",
+  },
+  {
+    number: "8.2",
+    kind: "fee",
+    title: "Old part not returned",
+    feeKind: "not_returned",
+    feeCents: 25000,
+    words: "If the old part is not on its way back in time, we bill",
   },
 ];
 
@@ -281,6 +315,8 @@ function standard(systemMonths: string, memory: string): Clause[] {
       deliveryGraceDays: 5,
       remedies: ["advance_replacement", "refund"],
       dueBackDays: 14,
+      freight: "seller_both",
+      responseHours: 4,
       words: "A fault reported in the first days.",
     },
     {
@@ -292,6 +328,9 @@ function standard(systemMonths: string, memory: string): Clause[] {
       startBasis: "shipped",
       remedies: ["advance_replacement", "replacement_on_receipt", "repair"],
       dueBackDays: 14,
+      holdCents: 90000,
+      freight: "customer_in",
+      responseHours: 8,
     },
     {
       number: "3.2",
@@ -311,8 +350,12 @@ function standard(systemMonths: string, memory: string): Clause[] {
       period: "P36M",
       startBasis: "shipped",
       enduranceHours: 30000,
+      enduranceTb: 1800,
       remedies: ["advance_replacement", "replacement_on_receipt"],
       dueBackDays: 14,
+      holdCents: 25000,
+      freight: "customer_in",
+      responseHours: 8,
     },
     {
       number: "3.4",
@@ -342,6 +385,7 @@ function standard(systemMonths: string, memory: string): Clause[] {
       startBasis: "installed",
       words: "The rest of the first cover, or ninety days, whichever is later.",
     },
+    ...GIVEN_ON,
     ...EXCLUSIONS,
     ...FEES,
   ];
@@ -420,6 +464,7 @@ export const TERMS: (Omit<Terms, "effectiveOn"> & { yearsBefore: number })[] = [
         period: "P90D",
         startBasis: "installed",
       },
+      ...GIVEN_ON,
       ...EXCLUSIONS,
       ...FEES,
     ],

@@ -1,5 +1,6 @@
 import { capital, showDay } from "../base/show";
 import { terabytes, thin } from "./reasons";
+import { compareTerms } from "./termwords";
 import { exclusionWords } from "./rules";
 import { FAULT_WORDS, OUTCOME_WORDS, type DecideInput, type Decision } from "./schema";
 
@@ -76,7 +77,16 @@ function readings({ readings: r }: DecideInput): string {
   return parts.join(", ") || "nothing read";
 }
 
+/** Clauses that say something else, each with what; other terms are not told clause by clause. */
 function clauseChanges(a: DecideInput, b: DecideInput): string | null {
-  const text = (i: DecideInput) => JSON.stringify(i.clauses.map(({ id: _, ...c }) => c));
-  return text(a) === text(b) ? null : "Other terms apply to it";
+  const rows = compareTerms(a.clauses, b.clauses).filter((r) => r.state !== "same");
+  if (rows.length === 0) return null;
+  if (rows.length > 2) return "Other terms apply to it";
+  return rows
+    .map((r) =>
+      r.state === "changed"
+        ? `Clause ${r.number}: ${r.changes.map((c) => `${lower(c.label)} ${c.was}, now ${c.now}`).join(", ")}`
+        : `Clause ${r.number} ${r.state}`,
+    )
+    .join(". ");
 }

@@ -381,7 +381,9 @@ export async function takeDecision(
       unitId: tied.unitId,
       claimOn: tied.claimOn ?? ticket.claimOn,
       faultClass: v.faultClass,
-      what: tied.slot ? `${tied.slot.toLowerCase()}, ${tied.serial}` : tied.serial,
+      what: tied.slot
+        ? `${tied.slot.charAt(0).toLowerCase()}${tied.slot.slice(1)}, ${tied.serial}`
+        : tied.serial,
       evidence: { photos: n("photo") + n("video") + (ours?.n ?? 0), logs: n("log") },
       established,
       ruledOut,
