@@ -1,5 +1,6 @@
 import fc from "fast-check";
 import { describe, expect, it } from "vitest";
+import { cents, clauseInput } from "@/app/(desk)/terms/input";
 import {
   CLAUSE_FEES,
   CLAUSE_KINDS,
@@ -447,5 +448,59 @@ describe("the rule of a clause in words", () => {
       }),
       { numRuns: 300 },
     );
+  });
+});
+
+describe("the form of a clause as it is typed", () => {
+  it.each([
+    ["250", 25_000],
+    ["250.5", 25_050],
+    ["250,50", 25_050],
+    ["1,250", 125_000],
+    ["1,250.00 EUR", 125_000],
+    ["1 250", 125_000],
+    ["", undefined],
+    ["much", "much"],
+    ["1.234", "1.234"],
+    ["-5", "-5"],
+  ])("an amount of %j", (typed, is) => {
+    expect(cents(typed)).toBe(is);
+  });
+
+  it("keeps what is no number for the check to tell of, beside all else", () => {
+    const input = clauseInput({
+      kind: "cover",
+      number: " 3.1 ",
+      title: "Drives",
+      parts: "named",
+      families: "drive",
+      period: "P36M",
+      startBasis: "shipped",
+      remedies: ["repair"],
+      enduranceHours: "30,000",
+      responseHours: "soon",
+      clockStops: "on",
+      evidence: " photo \r\n\n event log ",
+    });
+    expect(input).toMatchObject({
+      number: "3.1",
+      families: ["drive"],
+      enduranceHours: 30_000,
+      responseHours: "soon",
+      clockStops: true,
+      rolls: false,
+      evidence: ["photo", "event log"],
+    });
+    const clause = onlyItsOwn(clauseOf(input as Parameters<typeof clauseOf>[0]));
+    expect(at([clause])).toEqual(["3.1 responseHours: Give a whole number from 1 to 2,000."]);
+  });
+
+  it("does not take families that were all unticked for every part", () => {
+    const of = (parts: string) =>
+      onlyItsOwn(
+        clauseOf({ ...cover("3.1"), families: clauseInput({ parts }).families as TermsClause["families"] }),
+      );
+    expect(at([of("every")])).toEqual([]);
+    expect(at([of("named")])).toEqual(["3.1 families: Tick the parts it is for, or choose every part."]);
   });
 });

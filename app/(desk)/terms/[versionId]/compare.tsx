@@ -52,7 +52,7 @@ export function Compare({
                     ) : null}
                     <td className="q">{line.label}</td>
                     <td className={r.state === "removed" ? "gone" : "was"}>{line.was}</td>
-                    <td className="now">{line.now}</td>
+                    <td className={r.state === "changed" ? "now" : undefined}>{line.now}</td>
                   </tr>
                 ))}
               </tbody>
@@ -78,7 +78,8 @@ export function Compare({
 function lines(r: ClauseComparison): { label: string; was: string; now: string }[] {
   if (r.state === "changed") return r.changes;
   const c = (r.after ?? r.before)!;
-  const whole = `${capital(familiesWords(c.families))}${c.condition ? `, ${c.condition}` : ""}: ${clauseWords(c)}`;
+  const who = `${capital(familiesWords(c.families))}${c.condition ? `, ${c.condition}` : ""}`;
+  const whole = c.kind === "fee" ? clauseWords(c) : `${who}: ${clauseWords(c)}`;
   return r.state === "added"
     ? [{ label: "New clause", was: "", now: whole }]
     : [{ label: "Taken out", was: whole, now: "" }];

@@ -53,7 +53,7 @@ export default async function TermsVersion({
           <p>
             <span className="m">{v.code}</span>,{" "}
             {draft
-              ? `${v.before ? `drafted from issue ${v.before.issue}` : "new terms"}; last changed by ${v.madeByName || "somebody"}.`
+              ? `${v.before ? `drafted from issue ${v.before.issue}` : "new terms"}, to come in force on ${showDay(v.effectiveOn)}; last changed by ${v.madeByName || "somebody"}.`
               : `from ${showDay(v.effectiveOn)}${inForce ? ", in force" : v.effectiveOn > today ? ", to come" : ""}. Published${v.madeByName ? ` by ${v.madeByName}` : ""}: it never changes.`}{" "}
             {sold
               ? `${sold.under === 0 ? "Nothing was sold" : `${sold.under.toLocaleString("en-US")} ${plural(sold.under, "sale was", "sales were")} made`} under it. `
@@ -101,6 +101,15 @@ export default async function TermsVersion({
         open={writes ? one("clause") : undefined}
         kind={kind as ClauseKind | undefined}
       />
+      {writes ? (
+        <HeadForm
+          versionId={v.id}
+          version={v.version}
+          effectiveOn={v.effectiveOn}
+          note={v.note}
+          after={v.before ? showDay(v.before.effectiveOn) : null}
+        />
+      ) : null}
       {v.before ? (
         <Compare rows={rows} before={v.before} draft={draft} />
       ) : (
@@ -117,18 +126,12 @@ export default async function TermsVersion({
             preview={await newestPreview(ctx, v.id)}
             writes={writes}
             show={one("show")}
+            all={one("all") === "1"}
             zone={env().MENDBAY_ZONE}
             now={ctx.now}
           />
           {writes ? (
             <>
-              <HeadForm
-                versionId={v.id}
-                version={v.version}
-                effectiveOn={v.effectiveOn}
-                note={v.note}
-                after={v.before ? showDay(v.before.effectiveOn) : null}
-              />
               <DraftEnd versionId={v.id} version={v.version} issue={v.issue} problems={problems.length} />
             </>
           ) : null}

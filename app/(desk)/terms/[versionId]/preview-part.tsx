@@ -37,6 +37,7 @@ export function PreviewPart({
   preview,
   writes,
   show,
+  all,
   zone,
   now,
 }: {
@@ -44,6 +45,8 @@ export function PreviewPart({
   preview: PreviewView | null;
   writes: boolean;
   show?: string;
+  /** Every example that was kept, not the first few. */
+  all: boolean;
   zone: string;
   now: Date;
 }) {
@@ -79,7 +82,7 @@ export function PreviewPart({
         <PreviewStart versionId={of.id} again={preview !== null} first={preview === null || old} />
       ) : null}
       {preview && preview.done > 0 && preview.state !== "running" ? (
-        <Answer answer={preview.answer} of={of} show={show} />
+        <Answer answer={preview.answer} of={of} show={show} all={all} />
       ) : null}
       {!preview && !writes ? <p className="q">It was not reckoned yet.</p> : null}
     </section>
@@ -109,7 +112,17 @@ function sentence(a: PreviewAnswer): string {
   return `Of ${units(a.units)} in ${figure(a.sales)} open ${plural(a.sales, "sale")}, ${parts.join(", ")}.`;
 }
 
-function Answer({ answer: a, of, show }: { answer: PreviewAnswer; of: TermsIssue; show?: string }) {
+function Answer({
+  answer: a,
+  of,
+  show,
+  all,
+}: {
+  answer: PreviewAnswer;
+  of: TermsIssue;
+  show?: string;
+  all: boolean;
+}) {
   const counts: Record<PreviewChange | "tickets", number> = {
     ended: a.ended,
     lost: a.lost,
@@ -159,7 +172,12 @@ function Answer({ answer: a, of, show }: { answer: PreviewAnswer; of: TermsIssue
             {shown === "tickets" ? (
               <Tickets answer={a} />
             ) : (
-              <Units answer={a} change={shown} count={counts[shown]} />
+              <Units
+                answer={a}
+                change={shown}
+                count={counts[shown]}
+                more={all ? null : `/terms/${of.id}?show=${shown}&all=1#shown`}
+              />
             )}
           </div>
         </>
@@ -177,13 +195,27 @@ const day = (on: string | null, clause: string | null) =>
     </>
   );
 
-function Units({ answer, change, count }: { answer: PreviewAnswer; change: PreviewChange; count: number }) {
+const FIRST = 20;
+
+function Units({
+  answer,
+  change,
+  count,
+  more,
+}: {
+  answer: PreviewAnswer;
+  change: PreviewChange;
+  count: number;
+  /** Where all examples are shown; none: here. */
+  more: string | null;
+}) {
   // Cover that ends is shorter or lost too: it stands under its own name first.
-  const list = answer.examples.filter(
+  const kept = answer.examples.filter(
     (e) =>
       e.change === change ||
       (e.change === "ended" && (change === "lost" ? e.now === null : change === "shorter" && e.now !== null)),
   );
+  const list = more ? kept.slice(0, FIRST) : kept;
   return (
     <>
       <div className="tablewrap" role="region" aria-label={`Units ${SHOWN[change]}`} tabIndex={0}>
@@ -237,7 +269,13 @@ function Units({ answer, change, count }: { answer: PreviewAnswer; change: Previ
           </tbody>
         </table>
       </div>
-      {count > list.length ? (
+      {more && kept.length > list.length ? (
+        <p>
+          <Link href={more} scroll={false}>
+            Show all {figure(kept.length)} examples
+          </Link>
+        </p>
+      ) : count > kept.length ? (
         <p className="q s">At most {figure(EXAMPLES_OF[change])} of each are kept as examples.</p>
       ) : null}
     </>

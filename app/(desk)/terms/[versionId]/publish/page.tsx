@@ -3,7 +3,7 @@ import type { Metadata } from "next";
 import { notFound, redirect } from "next/navigation";
 import { requireStaff } from "@/app/_edge/ctx";
 import { civilDayIn } from "@/lib/base/civil";
-import { plural, showDay } from "@/lib/base/show";
+import { countWord, plural, showDay } from "@/lib/base/show";
 import { checkEffective, checkTerms } from "@/lib/coverage/terms";
 import { newestPreview, salesUnder, termsIssue } from "@/lib/coverage/terms.queries";
 import { compareTerms, comparisonWords } from "@/lib/coverage/termwords";
@@ -61,7 +61,7 @@ export default async function Publish({ params }: { params: Promise<{ versionId:
           </li>
           <li>
             {fresh
-              ? `What it would do was counted for this very draft: ${figure(preview.answer.ended)} covered today would not be, ${figure(preview.answer.ticketsDiffer)} open ${plural(preview.answer.ticketsDiffer, "ticket")} would be answered otherwise.`
+              ? `What it would do was counted for this very draft: ${countWord(preview.answer.ended)} ${plural(preview.answer.ended, "unit")} covered today would not be, ${countWord(preview.answer.ticketsDiffer)} open ${plural(preview.answer.ticketsDiffer, "ticket")} would be answered otherwise.`
               : "What it would do was not counted for the draft as it stands."}{" "}
             <Link href={`/terms/${v.id}#preview`}>{fresh ? "Read it" : "Count it first"}</Link>
           </li>
