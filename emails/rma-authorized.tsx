@@ -15,6 +15,7 @@ import {
 } from "./letter";
 
 export function RmaAuthorized(m: TemplateProps["rma_authorized"] & Sender) {
+  const goodwill = m.goodwill ?? [];
   return (
     <Letter seller={m.seller} preview={`Send it by ${m.sendBy}. The traveler is attached.`} rights>
       <Greeting name={m.personName} />
@@ -23,6 +24,12 @@ export function RmaAuthorized(m: TemplateProps["rma_authorized"] & Sender) {
         Its number is <Tag>{m.rmaNumber}</Tag>. What you get: {m.remedy.toLowerCase()}. Please send it by{" "}
         {m.sendBy}.
       </P>
+      {goodwill.length > 0 ? (
+        <P>
+          {goodwill.length === m.lines.length ? "This" : `For ${goodwill.join(", ")} this`} is goodwill, an
+          exception we make outside the terms of our warranty, and it changes no right that you have by law.
+        </P>
+      ) : null}
       <Head2>Send exactly this</Head2>
       <Lines
         of={m.lines.map((l) => (
@@ -49,7 +56,7 @@ export function RmaAuthorized(m: TemplateProps["rma_authorized"] & Sender) {
           <Lines of={m.fees} />
         </>
       ) : (
-        <Small>No fee applies to this return under our warranty.</Small>
+        <Small>No fee applies to this return{goodwill.length > 0 ? "" : " under our warranty"}.</Small>
       )}
       <Act href={m.link}>See the packing steps</Act>
       <Sign seller={m.seller} />

@@ -59,6 +59,8 @@ export const TEMPLATE_PROPS = {
     fees: z.array(Line),
     cautions: z.array(Line),
     link: Line,
+    /** Serials that come back by goodwill, outside the terms. Left out: none. */
+    goodwill: z.array(Line).optional(),
   }),
   rma_declined: z.object({
     personName: Line,

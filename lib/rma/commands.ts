@@ -12,12 +12,14 @@ import { civilDayIn } from "@/lib/base/civil";
 import { parse } from "@/lib/base/parse";
 import { ok, refuse, type Result } from "@/lib/base/result";
 import { showDay } from "@/lib/base/show";
+import { goodwillOfTicket } from "@/lib/coverage/goodwill.queries";
 import { REMEDY_WORDS, type Decision } from "@/lib/coverage/schema";
 import { actorName, type Ctx, type TxCtx } from "@/lib/ctx";
 import { env } from "@/lib/env";
 import { defaultSite } from "@/lib/ledger/queries";
 import { enqueueMail } from "@/lib/mail/commands";
 import { recordEntry } from "@/lib/tickets/commands";
+import { grantFor, type Grant } from "@/lib/tickets/goodwill";
 import { openLineOf } from "./queries";
 import { canStep, cautionsFor, rmaNumber, sendBy, type RmaAct } from "./rules";
 import {
@@ -43,7 +45,8 @@ const euros = (cents: number) => `${(cents / 100).toFixed(2)} EUR`;
 /**
  * Authorizes a return: lines, remedy, the day to send by, fees told before, the parcel expected
  * and the customer's mail with the traveler. A customer may do so only on a stored decision that
- * covers, with a remedy it permits. A unit has at most one open line, whoever is first.
+ * covers, with a remedy it permits. What is not covered goes by a manager's grant, for its remedy
+ * alone, whoever authorizes. A unit has at most one open line, whoever is first.
  */
 export async function authorizeRma(
   ctx: Ctx,
@@ -125,21 +128,22 @@ export async function authorizeRma(
           `The customer reports a damaged battery in ${harmed.serial}: no label for it. Call them, have it isolated, and arrange collection by who may carry it.`,
         );
       }
+      const goodwill = await goodwillOfTicket(ctx, v.ticketId);
+      const grants = new Map<string, Grant>();
       for (const l of lines) {
         const d = newest(l.unitId);
         if (!d) return refuse("rule", `Take the coverage decision for ${l.serial} first.`);
         const covers = d.outcome === "covered" || d.outcome === "covered_doa";
-        if (
-          d.outcome === "not_covered" &&
-          !(ctx.actor.kind === "staff" && ctx.actor.roles.includes("manager"))
-        ) {
-          return refuse(
-            "rule",
-            `${l.serial} is not covered. Decide again with new facts, or ask a manager: goodwill is theirs to grant.`,
-          );
-        }
         if (ctx.actor.kind === "customer" && !covers)
           return refuse("rule", "A person of the desk must look at this first. You hear from us.");
+        if (!covers) {
+          const grant = grantFor(
+            { serial: l.serial, decisionId: d.id, remedy: v.remedy },
+            goodwill.filter((g) => g.ticketUnitId === l.id && g.state === "granted"),
+          );
+          if (grant.ok) grants.set(l.id, grant.value);
+          else if (d.outcome === "not_covered") return grant;
+        }
         if (covers && !d.remedies.includes(v.remedy))
           return refuse(
             "rule",
@@ -189,9 +193,10 @@ export async function authorizeRma(
           state: "open",
           sort,
         });
-        // Told before, or it may not be asked for: every fee that this remedy can bring.
+        // Told before, or it may not be asked for: every fee that this remedy can bring. Goodwill brings none.
         const mayApply = (decision.answer as Decision).fees.filter(
           (f) =>
+            !grants.has(l.id) &&
             (FEE_KINDS as readonly string[]).includes(f.kind) &&
             (f.kind !== "not_returned" || v.remedy === "advance_replacement"),
         );
@@ -217,16 +222,29 @@ export async function authorizeRma(
         expectedOn: expiresOn,
         createdAt: ctx.now,
       });
+      const given = lines.flatMap((l) => {
+        const grant = grants.get(l.id);
+        return grant ? [{ ...grant, serial: l.serial }] : [];
+      });
       const entry = await recordEntry(ctx, {
         ticketId: v.ticketId,
         kind: "rma_authorized",
-        line: `${number} authorized: ${REMEDY_WORDS[v.remedy]}`,
+        line: [
+          `${number} authorized: ${REMEDY_WORDS[v.remedy]}`,
+          ...(given.length > 0 ? ["by goodwill", ...given.map((g) => g.ref)] : []),
+        ].join(", "),
         data: {
           rmaId,
           number,
           remedy: v.remedy,
           lines: lines.map((l) => ({ serial: l.serial, what: l.slot ?? l.modelName })),
           dueOn: expiresOn,
+          ...(given.length > 0
+            ? {
+                goodwill: given.map(({ goodwillId, ref, serial }) => ({ goodwillId, ref, serial })),
+                limitCents: given.reduce((sum, g) => sum + g.limitCents, 0),
+              }
+            : {}),
         },
       });
       if (!entry.ok) return entry;
@@ -247,6 +265,7 @@ export async function authorizeRma(
           fees: [...new Set(fees)],
           cautions: cautionsFor(lines).map((c) => `${c.title}. ${c.detail}`),
           link: `${env().MENDBAY_URL}/rma/${number}`,
+          goodwill: given.map((g) => g.serial),
         },
         ticketId: v.ticketId,
         accountId,
@@ -257,7 +276,12 @@ export async function authorizeRma(
       await audit(ctx, {
         act: "rma.authorize",
         subject: ["rma", rmaId],
-        after: { number, remedy: v.remedy, lines: lines.map((l) => l.serial) },
+        after: {
+          number,
+          remedy: v.remedy,
+          lines: lines.map((l) => l.serial),
+          ...(given.length > 0 ? { goodwill: given.map((g) => g.goodwillId) } : {}),
+        },
       });
       return ok({ rmaId, number, ref: entry.value.ref });
     });

@@ -8,6 +8,7 @@ import type { Ctx } from "@/lib/ctx";
 import { findUnits, lookAlikes, unitBySerial } from "@/lib/ledger/queries";
 import type { UnitHit } from "@/lib/ledger/schema";
 import type { MessageView } from "@/lib/mail/schema";
+import { factsSeen, moveSeen } from "./goodwill";
 import type { EntryView, TieState, WaitingOn } from "./schema";
 
 export type DeskRow = {
@@ -190,6 +191,7 @@ export async function ticketByNumber(ctx: Ctx, number: number): Promise<TicketVi
             .where(eq(messages.ticketId, id))
             .limit(ENTRY_LIMIT);
     const { ticket } = t;
+    const theirs = ctx.actor.kind === "customer";
     return {
       id,
       number: ticket.number,
@@ -203,7 +205,7 @@ export async function ticketByNumber(ctx: Ctx, number: number): Promise<TicketVi
       receivedAt: ticket.receivedAt,
       claimOn: ticket.claimOn,
       waitingOn: ticket.waitingOn,
-      waitingFor: ticket.waitingFor,
+      waitingFor: theirs ? moveSeen(ticket.waitingFor) : ticket.waitingFor,
       clockStartedAt: ticket.clockStartedAt,
       dueAt: ticket.dueAt,
       chaseOn: ticket.chaseOn,
@@ -220,7 +222,7 @@ export async function ticketByNumber(ctx: Ctx, number: number): Promise<TicketVi
         actorName: e.actorName,
         customerSees: e.customerSees,
         line: e.line,
-        data: e.data,
+        data: theirs ? factsSeen(e.data) : e.data,
       })),
       messages: Object.fromEntries(messageRows.map(({ html, ...m }) => [m.id, { ...m, hasHtml: html }])),
     };

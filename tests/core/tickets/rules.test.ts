@@ -78,6 +78,9 @@ const TABLE: Record<string, [EntryLetter, sees: boolean, data: object, to: To[]]
   "bench_closed, damage": ["B", true, { outcome: "damage_not_covered" }, all("us")],
   replacement_shipped: ["S", true, {}, all("carrier")],
   closed: ["N", true, {}, all("nobody")],
+  goodwill_asked: ["C", false, {}, all("us")],
+  goodwill_granted: ["C", true, {}, all("us")],
+  goodwill_declined: ["C", false, {}, all("us")],
 };
 function all(to: To): To[] {
   return WAITING_ON.map(() => to);
