@@ -361,15 +361,19 @@ export async function takeDecision(
       .where(eq(evidence.ticketId, v.ticketId))
       .groupBy(evidence.kind);
     const n = (k: string) => kinds.find((x) => x.kind === k)?.n ?? 0;
-    // What dock and bench saw of this unit is evidence too.
-    const [ours] = await ctx.tx
-      .select({ n: sql<number>`count(*)::int` })
-      .from(rmaLines)
-      .innerJoin(rmas, eq(rmas.id, rmaLines.rmaId))
-      .leftJoin(receiptLines, eq(receiptLines.rmaLineId, rmaLines.id))
-      .leftJoin(benchTests, eq(benchTests.rmaLineId, rmaLines.id))
-      .innerJoin(photos, or(eq(photos.subjectId, receiptLines.id), eq(photos.subjectId, benchTests.id)))
-      .where(and(eq(rmas.ticketId, v.ticketId), eq(rmaLines.unitId, tied.unitId)));
+    // What dock and bench saw of this unit is evidence too; a customer's own report comes before either.
+    const ours = !staff
+      ? undefined
+      : (
+          await ctx.tx
+            .select({ n: sql<number>`count(*)::int` })
+            .from(rmaLines)
+            .innerJoin(rmas, eq(rmas.id, rmaLines.rmaId))
+            .leftJoin(receiptLines, eq(receiptLines.rmaLineId, rmaLines.id))
+            .leftJoin(benchTests, eq(benchTests.rmaLineId, rmaLines.id))
+            .innerJoin(photos, or(eq(photos.subjectId, receiptLines.id), eq(photos.subjectId, benchTests.id)))
+            .where(and(eq(rmas.ticketId, v.ticketId), eq(rmaLines.unitId, tied.unitId)))
+        )[0];
     const [open] = await ctx.tx
       .select({ number: rmas.number })
       .from(rmaLines)
