@@ -54,6 +54,8 @@ export type OpenGoodwill = GoodwillView & {
   newest: { id: string; ref: string | null; outcome: Outcome; headline: string };
   /** True where the unit was decided again after the ask. */
   changed: boolean;
+  /** What this customer was granted before. */
+  before: { granted: number; cents: number };
 };
 
 export type GoodwillFigures = {

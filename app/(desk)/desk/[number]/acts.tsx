@@ -1,7 +1,8 @@
 "use client";
 import { useActionState, useState } from "react";
 import { UNSENT, type FormState } from "@/app/_edge/form";
-import { Button } from "@/components/ui/button";
+import { AskForm } from "../../goodwill/ask-form";
+import { Button, ButtonLink } from "@/components/ui/button";
 import { ErrorSummary } from "@/components/ui/error-summary";
 import { Check, Choice, ChoiceGroup, Field, Select, TextArea } from "@/components/ui/field";
 import { REMEDY_WORDS, type Outcome, type Remedy } from "@/lib/coverage/schema";
@@ -16,8 +17,16 @@ export type UnitAct = {
   what: string;
   faultClass: string | null;
   decision: { outcome: Outcome; remedies: Remedy[]; fees: string[]; headline: string } | null;
+  /** Who waits for a manager's answer, and what was granted by the newest decision and not used yet. */
+  goodwill: { waits: string | null; grants: { ref: string; remedy: Remedy }[] };
   rmaNumber: string | null;
 };
+
+/** What may be authorized: what the clause gives, and what goodwill grants beside it. */
+const remediesOf = (u: UnitAct): Remedy[] => [
+  ...new Set([...(u.decision?.remedies ?? []), ...u.goodwill.grants.map((g) => g.remedy)]),
+];
+type Act = "tie" | "decide" | "authorize" | "goodwill" | "decline" | "close";
 type Props = {
   ticketId: string;
   number: number;
@@ -36,10 +45,12 @@ export function Acts({ ticketId, number, closed, units, firstDay, known }: Props
   const covered = decided.filter(
     (u) => u.decision!.outcome === "covered" || u.decision!.outcome === "covered_doa",
   );
-  const [open, setOpen] = useState<"tie" | "decide" | "authorize" | "decline" | "close" | null>(null);
-  const toggle = (what: NonNullable<typeof open>) => setOpen((o) => (o === what ? null : what));
+  const [open, setOpen] = useState<Act | null>(null);
+  const toggle = (what: Act) => setOpen((o) => (o === what ? null : what));
   const onRma = units.filter((u) => u.rmaNumber);
-  const authorizable = decided.filter((u) => !u.rmaNumber && u.decision!.remedies.length > 0);
+  const authorizable = decided.filter((u) => !u.rmaNumber && remediesOf(u).length > 0);
+  const saidNo = decided.filter((u) => !u.rmaNumber && !covered.includes(u));
+  const askable = saidNo.filter((u) => u.goodwill.waits === null);
   return (
     <section className="actsbox" aria-label="What to do next">
       <div className="acts">
@@ -72,6 +83,24 @@ export function Acts({ ticketId, number, closed, units, firstDay, known }: Props
         >
           Authorize an RMA
         </Button>
+        {askable.length > 0 ? (
+          // A link with a page behind it, so that it also asks where no script runs.
+          <ButtonLink
+            kind="line"
+            href={`/goodwill/ask/${number}`}
+            prefetch={false}
+            aria-expanded={open === "goodwill"}
+            onClick={(e) => {
+              if (e.metaKey || e.ctrlKey || e.shiftKey) return;
+              e.preventDefault();
+              toggle("goodwill");
+            }}
+          >
+            Ask for goodwill
+          </ButtonLink>
+        ) : saidNo.length > 0 ? (
+          <Button type="button" kind="line" reason={`Goodwill: asked by ${saidNo[0]!.goodwill.waits}`} />
+        ) : null}
         {decided.length > 0 && covered.length === 0 ? (
           <Button
             type="button"
@@ -95,19 +124,28 @@ export function Acts({ ticketId, number, closed, units, firstDay, known }: Props
       {open === "authorize" ? (
         <AuthorizeForm ticketId={ticketId} number={number} units={authorizable} />
       ) : null}
+      {open === "goodwill" ? <AskForm ticketId={ticketId} number={number} units={askable} /> : null}
       {open === "decline" ? <DeclineForm ticketId={ticketId} number={number} units={decided} /> : null}
       {open === "close" ? <CloseForm ticketId={ticketId} number={number} /> : null}
     </section>
   );
 }
 
+const grantedBy = (grants: UnitAct["goodwill"]["grants"], remedy: Remedy): string | undefined => {
+  const refs = grants.filter((g) => g.remedy === remedy).map((g) => g.ref);
+  return refs.length > 0
+    ? `By goodwill, ${refs.join(", ")}. No fee, and the customer is told so.`
+    : undefined;
+};
+
 function AuthorizeForm({ ticketId, number, units }: { ticketId: string; number: number; units: UnitAct[] }) {
   const [state, send, busy] = useActionState(authorize, UNSENT as FormState<never>);
   const [lines, setLines] = useState(units.map((u) => u.ticketUnitId));
   const chosen = units.filter((u) => lines.includes(u.ticketUnitId));
-  const remedies = (chosen[0]?.decision?.remedies ?? []).filter((r) =>
-    chosen.every((u) => u.decision!.remedies.includes(r)),
+  const remedies = (chosen[0] ? remediesOf(chosen[0]) : []).filter((r) =>
+    chosen.every((u) => remediesOf(u).includes(r)),
   );
+  const granted = chosen.flatMap((u) => u.goodwill.grants);
   const other = state.details?.ticketNumber;
   return (
     <form action={send} className="actform">
@@ -150,7 +188,14 @@ function AuthorizeForm({ ticketId, number, units }: { ticketId: string; number: 
         error={state.fields?.remedy?.[0]}
       >
         {remedies.map((r, i) => (
-          <Choice key={r} name="remedy" value={r} title={REMEDY_WORDS[r]} defaultChecked={i === 0} />
+          <Choice
+            key={r}
+            name="remedy"
+            value={r}
+            title={REMEDY_WORDS[r]}
+            detail={grantedBy(granted, r)}
+            defaultChecked={i === 0}
+          />
         ))}
       </ChoiceGroup>
       {[...new Set(chosen.flatMap((u) => u.decision?.fees ?? []))].map((f) => (

@@ -9,6 +9,7 @@ import { DueClock } from "@/components/tickets/due";
 import { Tag } from "@/components/ui/tag";
 import { may } from "@/lib/auth/rules";
 import { civilDayIn } from "@/lib/base/civil";
+import { goodwillOfTicket } from "@/lib/coverage/goodwill.queries";
 import { coverFor, decisionInputs, decisionsOf, differencesOf } from "@/lib/coverage/queries";
 import { evidenceOf } from "@/lib/evidence/queries";
 import { defaultSite } from "@/lib/ledger/queries";
@@ -52,6 +53,7 @@ export default async function Ticket({
     await differencesOf(ctx, t.id),
     await rmasOfTicket(ctx, t.id),
   ];
+  const goodwill = await goodwillOfTicket(ctx, t.id);
   const newest = decisions.at(-1);
   const known = newest ? await decisionInputs(ctx, newest.id) : null;
   const clock = clockView(t, ctx.now, site);
@@ -174,6 +176,18 @@ export default async function Ticket({
                           headline: d.answer.headline.staff,
                         }
                       : null,
+                    goodwill: {
+                      waits:
+                        goodwill.find((g) => g.state === "asked" && g.ticketUnitId === u.id)?.askedByName ??
+                        null,
+                      grants: goodwill.filter(
+                        (g) =>
+                          g.state === "granted" &&
+                          g.ticketUnitId === u.id &&
+                          g.decisionId === d?.id &&
+                          g.usedBy === null,
+                      ),
+                    },
                     rmaNumber:
                       rmas.find((r) =>
                         r.lines.some(

@@ -10,6 +10,7 @@ import { TEST_OUTCOME_WORDS, type TestOutcome } from "@/lib/dock/schema";
 import type { EvidenceView } from "@/lib/evidence/queries";
 import type { MessageView } from "@/lib/mail/schema";
 import type { RmaView } from "@/lib/rma/schema";
+import { showEuros } from "@/lib/tickets/goodwill";
 import type { EntryView } from "@/lib/tickets/schema";
 
 type Props = {
@@ -193,12 +194,40 @@ export function Record({ entries, messages, evidence, decisions, differences, rm
           ),
         };
       }
+      case "goodwill_asked":
+      case "goodwill_granted":
+      case "goodwill_declined": {
+        const answered = entries.some((x) => x.kind !== e.kind && x.data.goodwillId === e.data.goodwillId);
+        return {
+          title: e.actorName,
+          by: `${GOODWILL_WORDS[e.kind]} ${str(e.data.unitSerial)}${e.data.remedy ? `: ${remedyWords(e.data.remedy)}` : ""}`,
+          right:
+            typeof e.data.limitCents === "number"
+              ? `up to ${showEuros(e.data.limitCents)}, for us only`
+              : e.kind === "goodwill_granted"
+                ? undefined
+                : "for us only",
+          children: (
+            <>
+              <p className="said">
+                <Cited text={str(e.data.reason) || str(e.data.managerWords)} refs={refs} />
+              </p>
+              {message ? <MailText message={message} refs={refs} /> : null}
+              {e.kind === "goodwill_asked" && !answered ? (
+                <p className="q">
+                  <a href={`/goodwill#g-${str(e.data.goodwillId)}`}>It waits for a manager’s answer</a>
+                </p>
+              ) : null}
+            </>
+          ),
+        };
+      }
       case "rma_authorized":
       case "rma_requested": {
         const rma = rmas.find((r) => r.id === e.data.rmaId);
         return {
           title: `${str(e.data.number)} authorized`,
-          by: `remedy: ${REMEDY_WORDS[str(e.data.remedy) as Remedy] ?? str(e.data.remedy)}`,
+          by: <Cited text={`remedy: ${remedyWords(e.data.remedy)}${byGoodwill(e.data)}`} refs={refs} />,
           right: e.actorName,
           children: rma ? (
             <dl className="rma">
@@ -276,6 +305,21 @@ export function Record({ entries, messages, evidence, decisions, differences, rm
       })}
     </>
   );
+}
+
+const GOODWILL_WORDS = {
+  goodwill_asked: "asks for goodwill for",
+  goodwill_granted: "grants goodwill for",
+  goodwill_declined: "declines goodwill for",
+} as const;
+
+const remedyWords = (v: unknown): string => REMEDY_WORDS[v as Remedy] ?? (typeof v === "string" ? v : "");
+
+/** ", by goodwill C4, up to 420.00 EUR", of an RMA that goes by a grant. */
+function byGoodwill({ goodwill, limitCents }: Record<string, unknown>): string {
+  if (!Array.isArray(goodwill) || typeof limitCents !== "number") return "";
+  const refs = (goodwill as { ref: string }[]).map((g) => g.ref);
+  return `, by goodwill ${refs.join(", ")}, up to ${showEuros(limitCents)}`;
 }
 
 function sendState(message: MessageView | undefined): ReactNode {
