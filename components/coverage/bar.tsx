@@ -11,7 +11,23 @@ const FILL: Record<BarKind, string> = {
 };
 
 /** One stretch of cover on a scale. The last day counts whole. */
-export function CoverBar({ kind, from, to, span }: { kind: BarKind; from: string; to: string; span: Span }) {
+export function CoverBar({
+  kind,
+  from,
+  to,
+  span,
+  open,
+}: {
+  kind: BarKind;
+  from: string;
+  to: string;
+  span: Span;
+  /** Where it runs on past the scale: no edge is drawn there, for there is none. */
+  open?: { left: boolean; right: boolean };
+}) {
   const { left, width } = stretch(from, to, span);
-  return <i className={FILL[kind]} style={{ "--l": `${left}%`, "--w": `${width}%` } as CSSProperties} />;
+  const cut = `${open?.left ? " on-l" : ""}${open?.right ? " on-r" : ""}`;
+  return (
+    <i className={FILL[kind] + cut} style={{ "--l": `${left}%`, "--w": `${width}%` } as CSSProperties} />
+  );
 }

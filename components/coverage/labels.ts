@@ -2,8 +2,19 @@
  * Where the labels of a ruler's lines stand. Claim and today are often a day apart, so each label is
  * put on a side of its line and, where that is not enough, on a lane of its own.
  */
-export type LineLabel = { id: string; at: number; text: string; prefer: "left" | "right" };
+export type LineLabel = {
+  id: string;
+  at: number;
+  text: string;
+  /** What it says where the scale is narrow. */
+  short?: string;
+  prefer: "left" | "right";
+};
 export type Placed = { side: "left" | "right"; lane: number };
+
+/** Widths to reckon for: the scale at its narrowest beside its columns, and folded. */
+export const WIDE = 420;
+export const NARROW = 256;
 
 const PER_CHARACTER = 6.6;
 const PADDING = 10;

@@ -56,6 +56,7 @@ export function rulerRows(view: CoverView): RulerRow[] {
           to: first.lastOn,
           words: first.words,
           claimed: rows.some((r) => r.claimed),
+          window: first.kind,
         },
       ];
     })

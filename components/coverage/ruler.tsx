@@ -1,7 +1,10 @@
 import type { CSSProperties } from "react";
 import { percentOf, Scale, shortDay, spanOf } from "../ui/scale";
 import { CoverBar, type BarKind } from "./bar";
-import { lanesOf, placeLabels, type LineLabel, type Placed } from "./labels";
+import { lanesOf, NARROW, placeLabels, WIDE, type LineLabel } from "./labels";
+import { RulerLines } from "./lines";
+import { RulerLoupe } from "./loupe";
+import { decides, loupeFor } from "./near";
 
 export type RulerRow = {
   clause: string;
@@ -11,18 +14,14 @@ export type RulerRow = {
   to: string;
   words: string;
   claimed?: boolean;
+  /** Which window it is, where the fill no longer says so: a DOA window that has ended. */
+  window?: "doa" | "cover";
 };
-
-// Widths the labels are reckoned for: the scale at its narrowest beside its columns, and folded.
-const WIDE = 420;
-const NARROW = 270;
-
-const shift = (p: Placed | undefined, flag: number) =>
-  p?.side === "left" ? "calc(-100% - 3px)" : `${p?.lane === 0 ? flag : 3}px`;
 
 /**
  * Time as a steel rule: a bar for each clause, and three lines across them all, shipped, claim and
- * today. Readers get it as a table of two columns: what is covered, and its last day in words.
+ * today. Readers get it as a table of two columns: what is covered, and its last day in words. Where
+ * the lines nearly touch, a loupe below shows those weeks day by day, and says them.
  */
 export function Ruler({
   rows,
@@ -74,56 +73,41 @@ export function Ruler({
     `${todayWord} ${shortDay(todayOn)}`,
   ].filter(Boolean);
 
+  const near = { shippedOn, claimOn, todayOn, todayWord };
+  const loupe = mini ? null : loupeFor(rows, near);
+
   return (
     <div className="rulerbox">
-      <div className={mini ? "ruler mini" : "ruler"} role="table" aria-label={`Cover: ${said.join(", ")}`}>
-        <div className="head" role="row">
-          <div className="cap" role="columnheader">
-            {caption}
+      <div className={mini ? "ruler mini" : "ruler"}>
+        <div className="years" role="table" aria-label={`Cover: ${said.join(", ")}`}>
+          <div className="head" role="row">
+            <div className="cap" role="columnheader">
+              {caption}
+            </div>
+            <Scale span={span} months={!mini} style={mini ? undefined : height} />
+            <div className="cap" role="columnheader">
+              Last covered day
+            </div>
           </div>
-          <Scale span={span} months={!mini} style={mini ? undefined : height} />
-          <div className="cap" role="columnheader">
-            Last covered day
-          </div>
-        </div>
-        {rows.map((row) => (
-          <div
-            key={`${row.clause} ${row.label} ${row.from} ${row.kind}`}
-            className={row.claimed ? "row hit" : "row"}
-            role="row"
-          >
-            <span role="rowheader">
-              {mini ? null : <span className="m">{row.clause}</span>}
-              {mini && row.clause ? `${row.label}, clause ${row.clause}` : row.label}
-            </span>
-            <span aria-hidden="true">
-              <CoverBar kind={row.kind} from={row.from} to={row.to} span={span} />
-            </span>
-            <span role="cell">{row.words}</span>
-          </div>
-        ))}
-        <div className="vl" aria-hidden="true">
-          {lines.map((line) => (
-            <i key={line.id} className={`vline ${line.id}`} style={{ left: `${line.at}%` }}>
-              {line.id === "today" ? <i className="flag" /> : null}
-              {mini ? null : (
-                <span
-                  className="vlab"
-                  style={
-                    {
-                      "--lane": wide.get(line.id)?.lane,
-                      "--lane-n": narrow.get(line.id)?.lane,
-                      "--x": shift(wide.get(line.id), line.id === "today" ? 12 : 3),
-                      "--x-n": shift(narrow.get(line.id), line.id === "today" ? 12 : 3),
-                    } as CSSProperties
-                  }
-                >
-                  {line.text}
-                </span>
-              )}
-            </i>
+          {rows.map((row) => (
+            <div
+              key={`${row.clause} ${row.label} ${row.from} ${row.kind}`}
+              className={row.claimed && decides(row, near) ? "row hit" : "row"}
+              role="row"
+            >
+              <span role="rowheader">
+                {mini ? null : <span className="m">{row.clause}</span>}
+                {mini && row.clause ? `${row.label}, clause ${row.clause}` : row.label}
+              </span>
+              <span aria-hidden="true">
+                <CoverBar kind={row.kind} from={row.from} to={row.to} span={span} />
+              </span>
+              <span role="cell">{row.words}</span>
+            </div>
           ))}
+          <RulerLines lines={lines} wide={wide} narrow={narrow} bare={mini} />
         </div>
+        {loupe ? <RulerLoupe loupe={loupe} rows={rows} span={span} days={near} /> : null}
       </div>
     </div>
   );

@@ -12,7 +12,13 @@ export function dayNumber(day: string): number {
   return Math.round(Date.UTC(y, m - 1, d) / MS);
 }
 
-const dayText = (n: number) => new Date(n * MS).toISOString().slice(0, 10);
+/** The day of a whole number of days since 1970-01-01. */
+export const dayText = (n: number): string => new Date(n * MS).toISOString().slice(0, 10);
+
+const WEEKDAYS = ["Sun", "Mon", "Tue", "Wed", "Thu", "Fri", "Sat"];
+
+/** "Mon". 1970-01-01 was a Thursday. */
+export const weekdayOf = (day: string): string => WEEKDAYS[(((dayNumber(day) + 4) % 7) + 7) % 7] ?? "";
 
 const MONTHS = [
   "January",
@@ -84,7 +90,7 @@ export function stretch(from: string, to: string, span: Span): { left: number; w
   return { left, width: Math.round(Math.max(0, right - left) * 1000) / 1000 };
 }
 
-export type Tick = { at: number; kind: "month" | "quarter" | "year"; label?: string };
+export type Tick = { at: number; kind: "day" | "week" | "month" | "quarter" | "year"; label?: string };
 
 /**
  * The ticks of a span: years always, quarters up to fifteen years, months up to seven. A year's label
@@ -116,32 +122,69 @@ export function ticksOf(span: Span, lastLabel = 95): Tick[] {
   }
 }
 
-const TICK = { month: "tick", quarter: "tick qt", year: "tick yr" } as const;
+/** Up to this many days each has its tick; on a longer rule only the Mondays have. */
+const DAY_BY_DAY = 70;
+const WEEK_LABELS = 6;
+
+/**
+ * The ticks of a few weeks: each day, Mondays tall and labelled with their day, as ISO weeks begin.
+ * Labels thin out so that they stand apart on the narrowest screen.
+ */
+export function dayTicksOf(span: Span, lastLabel = 86): Tick[] {
+  const from = dayNumber(span.from);
+  const to = dayNumber(span.to);
+  const labelEvery = Math.max(1, Math.ceil((to - from) / 7 / WEEK_LABELS));
+  const ticks: Tick[] = [];
+  let mondays = 0;
+  for (let n = from; n < to; n++) {
+    const day = dayText(n);
+    const at = percentOf(day, span);
+    if (weekdayOf(day) === "Mon") {
+      const labelled = mondays % labelEvery === 0 && at < lastLabel;
+      ticks.push(labelled ? { at, kind: "week", label: shortDay(day, day) } : { at, kind: "week" });
+      mondays += 1;
+    } else if (to - from <= DAY_BY_DAY) {
+      ticks.push({ at, kind: "day" });
+    }
+  }
+  return ticks;
+}
+
+const TICK = { day: "tick", week: "tick yr", month: "tick", quarter: "tick qt", year: "tick yr" } as const;
+
+/** Labels that a narrow screen has no room for: those by the far edge, and every second of many. */
+function spare(ticks: readonly Tick[]): Set<Tick> {
+  const labelled = ticks.filter((t) => t.label);
+  return new Set(labelled.filter((t, i) => t.at > 86 || (labelled.length > 6 && i % 2 === 1)));
+}
 
 /** The ticks of a rule, hanging from its top edge. Only for the eye. */
 export function Scale({
   span,
   months = true,
+  ticks,
   style,
 }: {
   span: Span;
   months?: boolean;
+  /** Other ticks than those of the years: the days of a loupe. */
+  ticks?: readonly Tick[];
   style?: CSSProperties;
 }) {
+  const drawn = (ticks ?? ticksOf(span, months ? 95 : 90)).filter((t) => months || t.kind !== "month");
+  const spared = spare(drawn);
   return (
     <div className="scale" style={style} aria-hidden="true">
-      {ticksOf(span, months ? 95 : 90)
-        .filter((t) => months || t.kind !== "month")
-        .map((t) => (
-          <span key={t.at}>
-            <i className={TICK[t.kind]} style={{ left: `${t.at}%` }} />
-            {t.label ? (
-              <span className="yl" style={{ left: `${t.at}%` }}>
-                {t.label}
-              </span>
-            ) : null}
-          </span>
-        ))}
+      {drawn.map((t) => (
+        <span key={t.at}>
+          <i className={TICK[t.kind]} style={{ left: `${t.at}%` }} />
+          {t.label ? (
+            <span className={spared.has(t) ? "yl spare" : "yl"} style={{ left: `${t.at}%` }}>
+              {t.label}
+            </span>
+          ) : null}
+        </span>
+      ))}
     </div>
   );
 }

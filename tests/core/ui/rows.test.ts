@@ -85,6 +85,16 @@ describe("ruler rows", () => {
     ]);
   });
 
+  it("know a DOA window that has ended, which its fill no longer shows", () => {
+    const rows = rulerRows(
+      view([], [row("u1", { kind: "doa", state: "ended", lastOn: "2024-04-03" }), row("u1")]),
+    );
+    expect(rows.map((r) => [r.kind, r.window])).toEqual([
+      ["ended", "doa"],
+      ["covered", "cover"],
+    ]);
+  });
+
   it("come in the order of the clauses, by number", () => {
     const rows = rulerRows(
       view(
@@ -137,5 +147,64 @@ describe("tree of a view", () => {
     ]);
     expect(nodes[2]?.was).toEqual([{ serial: "OM-64R-9", words: "to 11 Jun 2025, RMA-0877" }]);
     expect(nodes[5]).toMatchObject({ hit: true, current: true });
+  });
+
+  // Thirty-two modules, twenty-four drives, four supplies: a full four-socket server.
+  const full = () => {
+    const bank = (names: string[], family: string) =>
+      names.map((slot) => part(0, { unitId: slot, installationId: slot, serial: slot, slot, family }));
+    const numbers = (n: number) => Array.from({ length: n }, (_, i) => i + 1);
+    return [
+      ...bank(
+        ["A", "B", "C", "D"].flatMap((b) => numbers(8).map((n) => `${b}${n}`)),
+        "memory",
+      ),
+      ...bank(
+        numbers(24).map((n) => `Bay ${n}`),
+        "drive",
+      ),
+      ...bank(
+        numbers(4).map((n) => `Supply ${n}`),
+        "psu",
+      ),
+    ];
+  };
+
+  it("shows sixty parts in a handful of lines, each part once, whichever is claimed", () => {
+    const parts = full();
+    expect(parts).toHaveLength(60);
+    for (const claimed of parts) {
+      const nodes = coverNodes(
+        view(
+          parts,
+          parts.map((p) => row(p.unitId, { family: p.family, claimed: p === claimed })),
+          claimed.unitId,
+        ),
+      );
+      expect(nodes.length).toBeLessThanOrEqual(8);
+      expect(serials(nodes)).toEqual(parts.map((p) => p.serial));
+      const open = nodes.find((n) => n.hit);
+      expect(open?.serial).toBe(claimed.serial);
+      expect(nodes.flatMap((n) => n.folded ?? []).some((n) => n.hit)).toBe(false);
+    }
+  });
+
+  it("keeps a claimed part's parent and children where they can be seen", () => {
+    const board = part(1, { slot: "Board", family: "board" });
+    const sockets = [2, 3, 4, 5].map((n) =>
+      part(n, { parentUnitId: "u1", depth: 2, slot: `Socket ${n}`, family: "cpu" }),
+    );
+    const nodes = coverNodes(
+      view(
+        [board, ...sockets],
+        [board, ...sockets].map((p) => row(p.unitId)),
+        "u1",
+      ),
+    );
+    expect(nodes.map((n) => [n.depth, n.hit, n.folded?.length])).toEqual([
+      [0, false, undefined],
+      [1, true, undefined],
+      [2, undefined, 4],
+    ]);
   });
 });

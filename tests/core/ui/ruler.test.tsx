@@ -1,6 +1,7 @@
 // @vitest-environment happy-dom
 import { cleanup, render, screen, within } from "@testing-library/react";
 import { afterEach, describe, expect, it } from "vitest";
+import { NARROW } from "@/components/coverage/labels";
 import { PortalCoverBar } from "@/components/coverage/portal-bar";
 import { Ruler, type RulerRow } from "@/components/coverage/ruler";
 import { CoverTree } from "@/components/coverage/tree";
@@ -62,6 +63,23 @@ describe("ruler", () => {
     expect(container.querySelector(".vline.claim")).toBeNull();
     expect(container.querySelector(".vline.today .vlab")?.textContent).toBe("claim, today");
   });
+});
+
+it("a narrow ruler has no label that would run over its edge or into the next", () => {
+  const { container } = render(
+    <Ruler
+      rows={[
+        { clause: "3.1", label: "Board", kind: "covered", from: "2018-01-05", to: "2026-12-20", words: "" },
+      ]}
+      shippedOn="2018-01-04"
+      todayOn="2021-06-01"
+    />,
+  );
+  const shown = [...container.querySelectorAll<HTMLElement>(".yl:not(.spare)")];
+  const at = shown.map((l) => (parseFloat(l.style.left) / 100) * NARROW);
+  expect(at.length).toBeGreaterThan(2);
+  // Four figures of the mono face at 12.5 px and its distance from the tick.
+  for (const [i, x] of at.entries()) expect(x + 36).toBeLessThan(at[i + 1] ?? NARROW + 12);
 });
 
 describe("portal bar", () => {

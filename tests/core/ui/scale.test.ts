@@ -1,6 +1,17 @@
 import fc from "fast-check";
 import { describe, expect, it } from "vitest";
-import { dayNumber, monthOf, percentOf, shortDay, spanOf, stretch, ticksOf } from "@/components/ui/scale";
+import {
+  dayNumber,
+  dayText,
+  dayTicksOf,
+  monthOf,
+  percentOf,
+  shortDay,
+  spanOf,
+  stretch,
+  ticksOf,
+  weekdayOf,
+} from "@/components/ui/scale";
 import { addDays, daysBetween } from "@/lib/base/civil";
 
 const day = fc.integer({ min: -7_000, max: 40_000 }).map((n) => addDays("1990-01-01", n));
@@ -42,6 +53,32 @@ describe("days on a rule", () => {
         for (const d of days) {
           expect(d > span.from && d < span.to).toBe(true);
         }
+      }),
+    );
+  });
+});
+
+describe("ticks of a few weeks", () => {
+  it("mark each day, and each Monday by its date", () => {
+    const ticks = dayTicksOf({ from: "2028-02-21", to: "2028-03-13" });
+    expect(ticks).toHaveLength(21);
+    expect(ticks.filter((t) => t.kind === "week").map((t) => t.label)).toEqual(["21 Feb", "28 Feb", "6 Mar"]);
+  });
+
+  it("leave days out on a long rule, and labels where they would run together", () => {
+    const ticks = dayTicksOf({ from: "2026-01-05", to: "2026-04-06" });
+    expect(ticks).toHaveLength(13);
+    expect(ticks.filter((t) => t.label).map((t) => t.label)).toEqual(["5 Jan", "26 Jan", "16 Feb", "9 Mar"]);
+  });
+
+  // Reference: temporal-polyfill, and the UTC calendar of the language itself.
+  it("know the day of the week as the civil calendar does", () => {
+    const names = ["Sun", "Mon", "Tue", "Wed", "Thu", "Fri", "Sat"];
+    fc.assert(
+      fc.property(fc.integer({ min: -20_000, max: 40_000 }), (n) => {
+        const d = addDays("1970-01-01", n);
+        expect(dayText(n)).toBe(d);
+        expect(weekdayOf(d)).toBe(names[new Date(`${d}T00:00:00Z`).getUTCDay()]);
       }),
     );
   });
