@@ -10,10 +10,10 @@ const FILL: Record<Decision["outcome"], string> = {
 };
 
 const THEN: Record<Decision["outcome"], string> = {
-  covered: "then covered",
-  covered_doa: "then covered as dead on arrival",
-  not_covered: "then not covered",
-  needs_person: "then a person decides",
+  covered: "Then covered.",
+  covered_doa: "Then covered as dead on arrival.",
+  not_covered: "Then not covered.",
+  needs_person: "Then a person decides.",
 };
 
 /** What the clause attaches to its remedies, as a person says it. */
@@ -43,7 +43,16 @@ function Changes({ changes }: { changes: readonly Change[] }) {
 }
 
 /** A coverage decision as staff read it: the verdict, why, what would change it, and what is other than last time. */
-export function DecisionBody({ answer, difference }: { answer: Decision; difference?: Difference }) {
+export function DecisionBody({
+  answer,
+  difference,
+  differs = "Since the last",
+}: {
+  answer: Decision;
+  difference?: Difference;
+  /** What it is compared with, as the row's head. */
+  differs?: string;
+}) {
   const handling = handlingWords(answer);
   const news = difference ? [...difference.answer, ...difference.facts] : [];
   return (
@@ -81,7 +90,7 @@ export function DecisionBody({ answer, difference }: { answer: Decision; differe
         ) : null}
         {difference ? (
           <>
-            <dt>Since the last</dt>
+            <dt>{differs}</dt>
             <dd>
               {news.length > 0 ? `${news.join(". ")}.` : "The same facts, decided again: the same answer."}
             </dd>

@@ -92,7 +92,7 @@ export default async function WhatIfPage({ params, searchParams }: Props) {
             todayOn={today}
             mini
           />
-          <DecisionBody answer={then} difference={moved ? difference : undefined} />
+          <DecisionBody answer={then} difference={moved ? difference : undefined} differs="Would differ" />
         </section>
       </div>
     </main>
