@@ -365,7 +365,6 @@ function standard(systemMonths: string, memory: string): Clause[] {
       period: "P24M",
       startBasis: "shipped",
       remedies: ["replacement_on_receipt"],
-      dueBackDays: 14,
     },
     {
       number: "3.5",
@@ -375,7 +374,6 @@ function standard(systemMonths: string, memory: string): Clause[] {
       period: systemMonths,
       startBasis: "shipped",
       remedies: ["replacement_on_receipt", "repair"],
-      dueBackDays: 14,
     },
     {
       number: "5.1",
@@ -421,7 +419,6 @@ export const TERMS: (Omit<Terms, "effectiveOn"> & { yearsBefore: number })[] = [
         startBasis: "delivered",
         deliveryGraceDays: 5,
         remedies: ["replacement_on_receipt", "refund"],
-        dueBackDays: 14,
       },
       {
         number: "3.1",
@@ -432,7 +429,6 @@ export const TERMS: (Omit<Terms, "effectiveOn"> & { yearsBefore: number })[] = [
         startBasis: "delivered",
         deliveryGraceDays: 5,
         remedies: ["replacement_on_receipt", "repair"],
-        dueBackDays: 14,
       },
       {
         number: "3.3",
@@ -444,7 +440,6 @@ export const TERMS: (Omit<Terms, "effectiveOn"> & { yearsBefore: number })[] = [
         deliveryGraceDays: 5,
         enduranceHours: 45000,
         remedies: ["replacement_on_receipt"],
-        dueBackDays: 14,
       },
       {
         number: "3.4",
@@ -455,7 +450,6 @@ export const TERMS: (Omit<Terms, "effectiveOn"> & { yearsBefore: number })[] = [
         startBasis: "delivered",
         deliveryGraceDays: 5,
         remedies: ["replacement_on_receipt"],
-        dueBackDays: 14,
       },
       {
         number: "5.1",

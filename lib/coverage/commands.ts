@@ -1,4 +1,4 @@
-import { and, desc, eq, inArray, lte, ne } from "drizzle-orm";
+import { and, desc, eq, inArray, isNull, lte, ne } from "drizzle-orm";
 import { z } from "zod";
 import { transact } from "@/db/client";
 import { clauses, coverageDecisions, coverWindows, terms, termsVersions } from "@/db/schema/coverage";
@@ -28,6 +28,7 @@ import {
   type DecideInput,
   type Decision,
 } from "./schema";
+import { checkTerms, clauseOf } from "./terms";
 import { windowsFor } from "./windows";
 
 const PeriodText = z.string().superRefine((text, at) => {
@@ -80,11 +81,8 @@ export async function publishTerms(
   const input = parse(PublishTerms, raw);
   if (!input.ok) return input;
   const v = input.value;
-  const needsPeriod = v.clauses.filter(
-    (c) => ["doa", "cover", "replaced_part"].includes(c.kind) && !c.period,
-  );
-  if (needsPeriod.length > 0)
-    return refuse("invalid", `Clause ${needsPeriod[0]!.number} needs a period, such as P36M.`);
+  const wrong = checkTerms(v.clauses.map(clauseOf))[0];
+  if (wrong) return refuse("invalid", `${wrong.number ? `Clause ${wrong.number}: ` : ""}${wrong.message}`);
   return transact(ctx, async (ctx) => {
     await ctx.tx.insert(terms).values({ id: ctx.newId(), code: v.code, name: v.name }).onConflictDoNothing();
     const [of] = await ctx.tx
@@ -98,6 +96,12 @@ export async function publishTerms(
       .where(eq(termsVersions.termsId, of!.id))
       .orderBy(desc(termsVersions.issue))
       .limit(1);
+    const [draft] = await ctx.tx
+      .select({ issue: termsVersions.issue })
+      .from(termsVersions)
+      .where(and(eq(termsVersions.termsId, of!.id), isNull(termsVersions.publishedAt)));
+    if (draft)
+      return refuse("conflict", `A draft of issue ${draft.issue} is open. Publish or discard that first.`);
     const versionId = ctx.newId();
     const issue = (last?.issue ?? 0) + 1;
     await ctx.tx.insert(termsVersions).values({
