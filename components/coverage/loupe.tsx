@@ -87,15 +87,13 @@ export function RulerLoupe({
               {row.label}
             </span>
             <span>
-              {row.from <= loupe.to && row.to >= loupe.from ? (
-                <CoverBar
-                  kind={row.kind}
-                  from={row.from}
-                  to={row.to}
-                  span={near}
-                  open={{ left: row.from < loupe.from, right: row.to > loupe.to }}
-                />
-              ) : null}
+              <CoverBar
+                kind={row.kind}
+                from={row.from}
+                to={row.to}
+                span={near}
+                open={{ left: row.from < loupe.from, right: row.to > loupe.to }}
+              />
             </span>
             <span>{fromClaim(row, days)}</span>
           </div>

@@ -39,12 +39,9 @@ export const mattering = (rows: readonly RulerRow[]): readonly RulerRow[] => {
   return claimed.length > 0 ? claimed : rows.length === 1 ? rows : [];
 };
 
-/** Those of them that a loupe has something of, or all where it has nothing of any. */
-export function rowsUnder(rows: readonly RulerRow[], { from, to }: Pick<Loupe, "from" | "to">) {
-  const all = mattering(rows);
-  const seen = all.filter((r) => r.from <= to && r.to >= from);
-  return seen.length > 0 ? seen : all;
-}
+/** Those of them that have a day within a loupe. */
+export const rowsUnder = (rows: readonly RulerRow[], { from, to }: Pick<Loupe, "from" | "to">) =>
+  mattering(rows).filter((r) => r.from <= to && r.to >= from);
 
 const isDoa = (row: RulerRow) => row.window === "doa" || row.kind === "doa";
 
@@ -133,7 +130,7 @@ function sentences(
   }
   if (today && today.n !== claim.n) {
     const side = today.n > claim.n ? "after" : "before";
-    const which = edges.length > 0 ? "it" : `the claim of ${say(claim.n)}`;
+    const which = edges.length > 0 ? "the claim" : `the claim of ${say(claim.n)}`;
     out.push(`${subject(today.n)} ${daysApart(Math.abs(today.n - claim.n))} ${side} ${which}.`);
   }
   return out.join(" ");
@@ -187,6 +184,8 @@ export function loupeFor(rows: readonly RulerRow[], days: LoupeDays): Loupe | nu
 
   const { from, to } = weeksRound(low, high);
   if ((to - from + 1) * POWER > length) return null;
+  // Claim and today near each other with all cover long over: nothing hangs on which day it was.
+  if (rowsUnder(rows, { from: dayText(from), to: dayText(to) }).length === 0) return null;
   const inside = ({ n }: { n: number }) => n >= from && n <= to;
   const years = dayText(from).slice(0, 4) !== dayText(to).slice(0, 4);
   return {

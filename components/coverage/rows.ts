@@ -19,6 +19,14 @@ function partLabel(slot: string | null, family: string): string {
   return named ? slot : `${word}, ${slot}`;
 }
 
+/** "Drive bay 1 to 8": what the last slot's name has in common with the first's is not said twice. */
+function slotsWords(first: TreePart, last: TreePart): string {
+  const a = first.slot.split(" ");
+  const b = last.slot.split(" ");
+  const same = b.findIndex((word, i) => word !== a[i]);
+  return `${partLabel(first.slot, first.family)} to ${b.slice(Math.max(0, same)).join(" ")}`;
+}
+
 /**
  * A unit's cover as ruler rows: parts with the same clause and the same days share a row. The row
  * that decides a claim stands alone, so that its last day can be read.
@@ -129,7 +137,7 @@ export function coverNodes(view: CoverView, href?: (serial: string) => string): 
       nodes.push({
         key: `${first.installationId}+`,
         depth: Math.max(1, first.depth),
-        label: `${partLabel(first.slot, first.family)} to ${last.slot} (${run.length})`,
+        label: `${slotsWords(first, last)} (${run.length})`,
         bar: bar(first.unitId),
         folded: run.map((part) => ({ ...node(part), depth: Math.max(1, part.depth) + 1 })),
       });

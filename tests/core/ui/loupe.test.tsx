@@ -52,7 +52,7 @@ const CASES: Record<string, Case> = {
   "claim, end and today together": {
     rows: [row(), MEMORY],
     days: { shippedOn: SHIPPED, claimOn: "2027-03-02", todayOn: "2027-03-12" },
-    why: "The claim of 2 March came 1 day before the last covered day, 3 March. Today, 12 March, is 10 days after it.",
+    why: "The claim of 2 March came 1 day before the last covered day, 3 March. Today, 12 March, is 10 days after the claim.",
   },
   "claimed today, the day after": {
     rows: [row(), MEMORY],
@@ -67,7 +67,7 @@ const CASES: Record<string, Case> = {
   "claim and today near, all cover long over": {
     rows: [row({ kind: "ended", to: "2025-03-04" }), MEMORY],
     days: { shippedOn: SHIPPED, claimOn: "2026-11-02", todayOn: "2026-11-12" },
-    why: "Today, 12 November, is 10 days after the claim of 2 November.",
+    why: null,
   },
   "no claim, today near the end, over a year's end": {
     rows: [row({ from: "2024-01-03", to: "2027-01-02" })],
@@ -90,7 +90,7 @@ const CASES: Record<string, Case> = {
     days: { shippedOn: SHIPPED, claimOn: "2024-03-12", todayOn: "2024-03-14" },
     why:
       "The claim of 12 March came 7 days after the first covered day, 5 March, and 22 days before the last day " +
-      "of the DOA window, 3 April. Today, 14 March, is 2 days after it.",
+      "of the DOA window, 3 April. Today, 14 March, is 2 days after the claim.",
   },
   "a DOA window that has ended, known by its window": {
     rows: [{ ...DOA, kind: "ended" }, row(), MEMORY],
@@ -174,6 +174,7 @@ describe("whether a ruler needs a loupe", () => {
         expect(length).toBeLessThanOrEqual(13 * 7);
         const inside = (d: string) => d >= loupe.from && d <= loupe.to;
         expect(inside(claimOn) || inside(todayOn)).toBe(true);
+        expect(rowsUnder(rows, loupe).length).toBeGreaterThan(0);
         expect(loupe.why).toMatch(/^[A-Z].*\.$/);
       }),
     );
@@ -198,11 +199,6 @@ describe("rows under a loupe", () => {
 
   it("are the claimed ones that reach into it", () => {
     expect(rowsUnder([DOA, row(), MEMORY], at).map((r) => r.clause)).toEqual(["3.1"]);
-  });
-
-  it("are all the claimed ones where none does, so that their end is still said", () => {
-    const over = row({ to: "2025-03-04" });
-    expect(rowsUnder([over, MEMORY], at)).toEqual([over]);
   });
 
   it.each([

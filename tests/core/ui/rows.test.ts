@@ -124,6 +124,17 @@ describe("tree of a view", () => {
     expect(serials(nodes)).toEqual(parts.map((p) => p.serial));
   });
 
+  it("says what slots have in common once", () => {
+    const label = (...slots: string[]) => {
+      const parts = slots.map((slot, i) => part(i, { slot }));
+      const rows = parts.map((p) => row(p.unitId));
+      return coverNodes(view(parts, rows))[1]?.label;
+    };
+    expect(label("Memory A1", "Memory A2", "Memory A3")).toBe("Memory A1 to A3 (3)");
+    expect(label("Module 1", "Module 2", "Module 3")).toBe("Memory, Module 1 to 3 (3)");
+    expect(label("A1", "A2", "B1")).toBe("Memory, A1 to B1 (3)");
+  });
+
   it("leaves the claimed, the swapped and the differently covered part in the open", () => {
     const parts = [
       part(1),
