@@ -22,8 +22,11 @@ const LANES = 4;
 
 type Box = { from: number; to: number; lane: number };
 
-/** Labels by id for a scale of this many pixels. Earlier labels choose first. */
-export function placeLabels(labels: readonly LineLabel[], width: number): Map<string, Placed> {
+/**
+ * Labels by id for a scale of this many pixels. Earlier labels choose first. `beyond` is free room to
+ * the right of the scale that a label may run into.
+ */
+export function placeLabels(labels: readonly LineLabel[], width: number, beyond = 0): Map<string, Placed> {
   const lines = labels.map((l) => (l.at / 100) * width);
   const taken: Box[] = [];
   const placed = new Map<string, Placed>();
@@ -33,7 +36,7 @@ export function placeLabels(labels: readonly LineLabel[], width: number): Map<st
     const w = label.text.length * PER_CHARACTER + PADDING;
     const boxOn = (side: "left" | "right", lane: number): Box =>
       side === "right" ? { from: x, to: x + w, lane } : { from: x - w, to: x, lane };
-    const fits = (b: Box) => b.from >= 0 && b.to <= width;
+    const fits = (b: Box) => b.from >= 0 && b.to <= width + beyond;
     const free = (b: Box) => taken.every((t) => t.lane !== b.lane || b.to <= t.from || b.from >= t.to);
     const clear = (b: Box) => lines.every((line, i) => i === index || line <= b.from || line >= b.to);
     const sides = label.prefer === "left" ? (["left", "right"] as const) : (["right", "left"] as const);

@@ -15,6 +15,9 @@ import { RulerLines } from "./lines";
 import { decides, fromClaim, rowsUnder, type Loupe, type LoupeDays } from "./near";
 import type { RulerRow } from "./ruler";
 
+/** The head of the last column says nothing here: a label by the scale's end may run into it. */
+const EMPTY_HEAD = 110;
+
 /** Two hairlines that spread from the days on the ruler to the same days enlarged. */
 function Beam({ left, right }: { left: number; right: number }) {
   return (
@@ -59,7 +62,7 @@ export function RulerLoupe({
   if (inside(todayOn)) mark("today", todayOn, one ? `claim, ${todayWord}` : todayWord, true, "right");
   if (inside(claimOn) && !one) mark("claim", claimOn, "claim", false, claimOn < todayOn ? "left" : "right");
   if (inside(shippedOn)) mark("ship", shippedOn, "shipped", false, "left");
-  const wide = placeLabels(lines, WIDE);
+  const wide = placeLabels(lines, WIDE, EMPTY_HEAD);
   const narrow = placeLabels(
     lines.map((l) => ({ ...l, text: l.short ?? l.text })),
     NARROW,

@@ -20,6 +20,17 @@ describe("labels of the ruler's lines", () => {
     expect(placeLabels(three(0, 20, 99.5), 600).get("today")?.side).toBe("left");
   });
 
+  it("run on past the end where there is free room, sooner than over a line", () => {
+    const lines: LineLabel[] = [
+      { id: "today", at: 88, text: "today, Tue 1 Dec", prefer: "right" },
+      { id: "claim", at: 85, text: "claim Mon 30 Nov", prefer: "left" },
+    ];
+    expect(placeLabels(lines, 420).get("today")?.side).toBe("left");
+    const placed = placeLabels(lines, 420, 110);
+    expect(placed.get("today")).toEqual({ side: "right", lane: 0 });
+    expect(placed.get("claim")).toEqual({ side: "left", lane: 0 });
+  });
+
   it("never overlap, whatever the days", () => {
     const at = fc.double({ min: 0, max: 100, noNaN: true });
     fc.assert(
