@@ -73,11 +73,11 @@ async function listed(tx: Tx, ctx: Ctx, filter: GoodwillFilter, zone: string, li
 
 const openAsks = async (tx: Tx, ctx: Ctx): Promise<OpenGoodwill[]> =>
   (
-    await tx.execute(sql`select ${COLUMNS}, n.id as "newestId", n.outcome::text as "newestOutcome", n.headline as "newestHeadline",
+    await tx.execute(sql`select ${COLUMNS}, n.id as "newestId", n.outcome::text as "newestOutcome", n.headline as "newestHeadline", n.reasons as "newestReasons",
         (select e.letter::text || e.number from entry e where e.ticket_id = g.ticket_id and e.kind = 'decision' and e.data ->> 'decisionId' = n.id::text limit 1) as "newestRef",
         b.granted, b.cents
       ${FROM}
-      join lateral (select d.id, d.outcome, d.answer -> 'headline' ->> 'staff' as headline from coverage_decision d
+      join lateral (select d.id, d.outcome, d.answer -> 'headline' ->> 'staff' as headline, jsonb_path_query_array(d.answer, '$.reasons[0 to 2].staff') as reasons from coverage_decision d
         where d.ticket_id = g.ticket_id and d.unit_id = g.unit_id order by d.made_at desc limit 1) n on true
       join lateral (select count(*)::int as granted, coalesce(sum(x.limit_cents), 0)::float8 as cents from goodwill x
         where x.account_id = g.account_id and x.state = 'granted') b on true
@@ -90,6 +90,7 @@ const openAsks = async (tx: Tx, ctx: Ctx): Promise<OpenGoodwill[]> =>
       ref: r.newestRef as string | null,
       outcome: r.newestOutcome as Outcome,
       headline: r.newestHeadline as string,
+      reasons: r.newestReasons as string[],
     },
     changed: r.newestId !== r.decisionId,
     before: { granted: r.granted as number, cents: r.cents as number },

@@ -51,7 +51,7 @@ export type GoodwillView = {
 
 /** An ask that waits, with the newest decision about its unit: what a manager answers by. */
 export type OpenGoodwill = GoodwillView & {
-  newest: { id: string; ref: string | null; outcome: Outcome; headline: string };
+  newest: { id: string; ref: string | null; outcome: Outcome; headline: string; reasons: string[] };
   /** True where the unit was decided again after the ask. */
   changed: boolean;
   /** What this customer was granted before. */

@@ -5,7 +5,7 @@ import { Button } from "@/components/ui/button";
 import { ErrorSummary } from "@/components/ui/error-summary";
 import { Check, Field, Select, TextArea } from "@/components/ui/field";
 import { REMEDIES, REMEDY_WORDS, type Remedy } from "@/lib/coverage/schema";
-import { problems } from "../desk/[number]/form-parts";
+import { keepTyped, problems } from "../desk/[number]/form-parts";
 import { answer } from "./actions";
 
 /** Grant or decline, with the decision it is answered by: an answer by an older one is refused. */
@@ -31,7 +31,7 @@ export function AnswerForm({
     defaultValue: typed(name),
   });
   return (
-    <form action={send} className="gw-form" aria-label={`Answer for ${serial}`}>
+    <form action={send} className="gw-form" aria-label={`Answer for ${serial}`} onReset={keepTyped}>
       <ErrorSummary
         title="It is not answered yet"
         items={problems(state).map((p) => ("field" in p ? { ...p, field: `${p.field}-${goodwillId}` } : p))}
@@ -44,7 +44,6 @@ export function AnswerForm({
           name="remedy"
           {...at("remedy")}
           defaultValue={typed("remedy") || wanted}
-          key={`r${typed("remedy")}`}
           options={REMEDIES.map((r) => ({ value: r, label: REMEDY_WORDS[r] }))}
         />
         <Field
@@ -54,7 +53,6 @@ export function AnswerForm({
           inputMode="decimal"
           autoComplete="off"
           {...at("limit")}
-          key={`l${typed("limit")}`}
         />
       </div>
       <TextArea
@@ -63,14 +61,12 @@ export function AnswerForm({
         name="words"
         rows={2}
         {...at("words")}
-        key={`w${typed("words")}`}
       />
       <Check
         name="tell"
         title="Write to the customer now that we make an exception"
         detail="Otherwise they learn it with the papers of the return. The limit is never told."
         defaultChecked={typed("tell") === "on"}
-        key={`t${typed("tell")}`}
       />
       <div className="acts">
         <Button

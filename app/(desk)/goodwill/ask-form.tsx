@@ -5,7 +5,7 @@ import { Button } from "@/components/ui/button";
 import { ErrorSummary } from "@/components/ui/error-summary";
 import { Select, TextArea } from "@/components/ui/field";
 import { REMEDIES, REMEDY_WORDS } from "@/lib/coverage/schema";
-import { Hidden, problems } from "../desk/[number]/form-parts";
+import { Hidden, keepTyped, problems } from "../desk/[number]/form-parts";
 import { ask } from "./actions";
 
 export type Askable = { ticketUnitId: string; serial: string; what: string };
@@ -23,7 +23,7 @@ export function AskForm({
   const [state, send, busy] = useActionState(ask, UNSENT as FormState<never>);
   const typed = (name: string) => String(state.values?.[name] ?? "");
   return (
-    <form action={send} className="actform">
+    <form action={send} className="actform" onReset={keepTyped}>
       <ErrorSummary title="Nothing was asked" items={problems(state)} />
       <Hidden ticketId={ticketId} number={number} />
       {units.length > 1 ? (
@@ -32,7 +32,6 @@ export function AskForm({
           name="ticketUnitId"
           options={units.map((u) => ({ value: u.ticketUnitId, label: `${u.serial}, ${u.what}` }))}
           defaultValue={typed("ticketUnitId") || undefined}
-          key={`u${typed("ticketUnitId")}`}
         />
       ) : (
         <input type="hidden" name="ticketUnitId" value={units[0]?.ticketUnitId ?? ""} />
@@ -42,7 +41,6 @@ export function AskForm({
         name="remedy"
         error={state.fields?.remedy?.[0]}
         defaultValue={typed("remedy")}
-        key={`r${typed("remedy")}`}
       >
         <option value="">Choose one</option>
         {REMEDIES.map((r) => (
@@ -57,7 +55,6 @@ export function AskForm({
         hint="A manager decides by these words; cite entries such as C1. No customer sees them."
         error={state.fields?.reason?.[0]}
         defaultValue={typed("reason")}
-        key={`t${typed("reason")}`}
       />
       <Button aria-disabled={busy}>{busy ? "Asking" : "Ask a manager"}</Button>
     </form>

@@ -44,6 +44,11 @@ export function OpenAsk({
           <dd>
             <i className={FILL[g.newest.outcome]} aria-hidden="true" /> {g.newest.headline}{" "}
             {g.newest.ref ? <Cite refName={g.newest.ref} href={`${record}#${g.newest.ref}`} /> : null}
+            {g.newest.reasons.map((reason) => (
+              <span className="gw-reason" key={reason}>
+                {reason}
+              </span>
+            ))}
             {g.changed ? (
               <b className="gw-changed">
                 Decided again since it was asked. Read this one first; an answer holds for it.

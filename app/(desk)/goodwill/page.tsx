@@ -77,7 +77,7 @@ export default async function Goodwill({ searchParams }: { searchParams: Promise
           <Answers rows={rows} zone={zone} />
         ) : (
           <p className="q">
-            {!ever
+            {figures.granted + figures.declined === 0 && filter.state !== "asked" && filter.month === null
               ? "The first answer stands here, with its remedy, its limit and who gave it."
               : filter.after
                 ? "Nothing older is on record."

@@ -1,3 +1,4 @@
+import type { SyntheticEvent } from "react";
 import type { FormState } from "@/app/_edge/form";
 
 /** Which ticket an act's form is about. */
@@ -17,3 +18,6 @@ export function problems(state: FormState<unknown>) {
   );
   return list.length > 0 ? list : state.message && !state.ok ? [{ message: state.message }] : [];
 }
+
+/** A form is emptied after it was sent, also when it was refused: what was typed stays instead. */
+export const keepTyped = (event: SyntheticEvent<HTMLFormElement>): void => event.preventDefault();
