@@ -1,4 +1,5 @@
 import "server-only";
+import { revalidatePath } from "next/cache";
 import { headers } from "next/headers";
 import { redirect } from "next/navigation";
 import { refuse, type Result } from "@/lib/base/result";
@@ -24,7 +25,11 @@ export function action<T>(
     const input = formInput(form);
     const result = await run(await currentCtx(), input, form);
     const to = result.ok ? after?.(result.value, input) : undefined;
-    if (to) redirect(to);
+    if (to) {
+      // A place on the page that is shown already is no new page to the browser: what it holds is old now.
+      if (to.includes("#")) revalidatePath(to.replace(/[?#].*$/, ""));
+      redirect(to);
+    }
     return stateOf(result, form);
   };
 }
