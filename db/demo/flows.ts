@@ -23,6 +23,7 @@ import { storeRaw } from "@/lib/mail/commands";
 import { authorizeRma, markSent } from "@/lib/rma/commands";
 import { rmaById } from "@/lib/rma/queries";
 import { askEvidence, attachEvidence, reply, takeDecision, tieUnit } from "@/lib/tickets/commands";
+import { answerGoodwill, askGoodwill } from "@/lib/tickets/goodwill.commands";
 import { sendReport } from "@/lib/tickets/report.commands";
 import type { Remedy } from "@/lib/coverage/schema";
 import { labelPicture, picture } from "./pictures";
@@ -251,6 +252,40 @@ export async function authorize(
     }),
   );
   return done.rmaId;
+}
+
+/** An agent asks for an exception, with the reason; hours later a manager answers, or has not yet. */
+export async function goodwill(
+  s: Story,
+  of: { ticketId: string; ticketUnitId: string },
+  ask: { reason: string; remedy: Remedy },
+  answer: { words: string; limit?: string } | null,
+): Promise<void> {
+  const { goodwillId } = must(await askGoodwill(s.agent, { ...of, ...ask }));
+  if (!answer) return;
+  s.later(3);
+  const found = await rawDb().execute<{ id: string }>(
+    sql`select decision_id as id from goodwill where id = ${goodwillId}`,
+  );
+  const by = { goodwillId, decisionId: found.rows[0]!.id, words: answer.words };
+  const manager = s.ctx(s.people.anneke);
+  must(
+    await answerGoodwill(
+      manager,
+      answer.limit
+        ? { ...by, answer: "granted", remedy: ask.remedy, limit: answer.limit }
+        : { ...by, answer: "declined" },
+    ),
+  );
+  if (!answer.limit) return;
+  s.later(1);
+  must(
+    await authorizeRma(s.agent, {
+      ticketId: of.ticketId,
+      lines: [{ ticketUnitId: of.ticketUnitId }],
+      remedy: ask.remedy,
+    }),
+  );
 }
 
 export const sent = async (s: Story, rmaId: string, email: string) =>

@@ -17,6 +17,7 @@ import {
   byPortal,
   goesBack,
   goesOut,
+  goodwill,
   received,
   sent,
   Story,
@@ -442,6 +443,42 @@ for (const hours of [4, 9, 30, 52]) {
 for (const hours of [28, 75]) {
   const part = choose({ family: "drive", fromDays: 745, toDays: 400, condition: "refurbished" });
   if (part) await byPortal(recent(hours), part, "failed_drive", "Drive no longer seen", 0);
+}
+// Cover ended, and somebody thinks that an exception is right: granted, declined, and one that waits.
+for (const [days, wish, given] of [
+  [
+    38,
+    {
+      reason: "They chose us for forty machines this spring, and this is their first fault.",
+      remedy: "repair",
+    },
+    { words: "For the first fault of a new customer, once.", limit: "180" },
+  ],
+  [
+    24,
+    { reason: "The customer says that it failed in its first week and nobody wrote.", remedy: "credit" },
+    { words: "Its log shows months of work after that week. Offer a paid repair." },
+  ],
+  [
+    9,
+    {
+      reason: "It is of the lot that fails early; our own figures show it.",
+      remedy: "replacement_on_receipt",
+    },
+    { words: "The lot is ours to answer for.", limit: "240" },
+  ],
+  [
+    1,
+    { reason: "Second drive of the same bay within a year; C1 counts the days only.", remedy: "repair" },
+    null,
+  ],
+] as const) {
+  const part = choose({ family: "drive", fromDays: 745, toDays: 300, condition: "refurbished" });
+  if (!part) continue;
+  const s = recent(days * 24);
+  const ids = await byPortal(s, part, "failed_drive", "Drive drops out of the array", 0);
+  s.later(3);
+  await goodwill(s, ids, wish, given);
 }
 /** Authorized, and then as far as `steps` goes: 1 sent, 2 received, 3 bench begun, 4 tested. */
 async function underWay(hours: number, steps: number, family?: string): Promise<void> {

@@ -22,9 +22,9 @@ export type UnitAct = {
   rmaNumber: string | null;
 };
 
-/** What may be authorized: what the clause gives, and what goodwill grants beside it. */
+/** What may be authorized: what goodwill grants first, as it was asked for, then what the clause gives. */
 const remediesOf = (u: UnitAct): Remedy[] => [
-  ...new Set([...(u.decision?.remedies ?? []), ...u.goodwill.grants.map((g) => g.remedy)]),
+  ...new Set([...u.goodwill.grants.map((g) => g.remedy), ...(u.decision?.remedies ?? [])]),
 ];
 type Act = "tie" | "decide" | "authorize" | "goodwill" | "decline" | "close";
 type Props = {
@@ -182,9 +182,14 @@ function AuthorizeForm({ ticketId, number, units }: { ticketId: string; number: 
         ))}
       </fieldset>
       <ChoiceGroup
+        key={remedies.join()}
         legend="Remedy"
         name="remedy"
-        hint="In the order of the clause."
+        hint={
+          granted.length > 0
+            ? "What was granted first, then in the order of the clause."
+            : "In the order of the clause."
+        }
         error={state.fields?.remedy?.[0]}
       >
         {remedies.map((r, i) => (

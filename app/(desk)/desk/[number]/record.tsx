@@ -212,7 +212,11 @@ export function Record({ entries, messages, evidence, decisions, differences, rm
               <p className="said">
                 <Cited text={str(e.data.reason) || str(e.data.managerWords)} refs={refs} />
               </p>
-              {message ? <MailText message={message} refs={refs} /> : null}
+              {message ? (
+                <Folded words="The customer was told by mail">
+                  <MailText message={message} refs={refs} />
+                </Folded>
+              ) : null}
               {e.kind === "goodwill_asked" && !answered ? (
                 <p className="q">
                   <a href={`/goodwill#g-${str(e.data.goodwillId)}`}>It waits for a manager’s answer</a>
