@@ -1,5 +1,6 @@
-import { sql } from "drizzle-orm";
+import { asc, eq, sql } from "drizzle-orm";
 import { read, type Tx } from "@/db/client";
+import { contacts } from "@/db/schema/ledger";
 import { permit } from "@/lib/auth/rules";
 import { civilDayIn, daysBetween, earlierDay, isDay } from "@/lib/base/civil";
 import { ok, refuse, type Result } from "@/lib/base/result";
@@ -177,6 +178,22 @@ async function judged(tx: Tx, found: readonly Found[], onDay: string): Promise<U
 /** Cover and open RMA of units by id, for acting on them. What the one who asks may not see is left out. */
 export async function coverOfUnits(ctx: Ctx, ids: readonly string[], onDay: string): Promise<UnitCover[]> {
   return read(ctx, async (tx) => judged(tx, await unitsFound(tx, { ids: [...ids] }), onDay));
+}
+
+/** Whom an account's answers go to when nobody is named: its first contact. */
+export async function accountContact(
+  ctx: Ctx,
+  accountId: string,
+): Promise<{ contactId: string; name: string; email: string } | null> {
+  const rows = await read(ctx, (tx) =>
+    tx
+      .select({ contactId: contacts.id, name: contacts.name, email: contacts.email })
+      .from(contacts)
+      .where(eq(contacts.accountId, accountId))
+      .orderBy(asc(contacts.createdAt), asc(contacts.email))
+      .limit(1),
+  );
+  return rows[0] ?? null;
 }
 
 const NOT_FOUND = {
