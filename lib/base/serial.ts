@@ -1,5 +1,5 @@
 /** Dashes of every kind, spaces of every kind, and marks that no eye sees. */
-const NOISE = /[\s\u00A0\u00AD\u200B-\u200F\u2010-\u2015\u202A-\u202E\u2060\u2212\uFEFF\-_./*]/g;
+const NOISE = /[\s\u0000\u00A0\u00AD\u200B-\u200F\u2010-\u2015\u202A-\u202E\u2060\u2212\uFEFF\-_./*]/g;
 
 /** What a scanner or a pasted label brings beside the serial itself. */
 const LABELS = /^\s*(?:s\/?n|serial(?:\s*(?:no|number))?|ser)\s*[.:#=]?\s*/i;
@@ -20,6 +20,15 @@ export function serialKey(text: string): string {
   return cleanScan(text).toUpperCase().replace(NOISE, "");
 }
 
+/** The same key with nothing taken for a label: what stands on the paper, letter for letter. */
+export function bareKey(text: string): string {
+  return text
+    .normalize("NFKC")
+    .toUpperCase()
+    .replace(/[\u0000-\u001f]/g, "")
+    .replace(NOISE, "");
+}
+
 const ALIKE: Record<string, string> = {
   O: "0",
   Q: "0",
@@ -33,9 +42,14 @@ const ALIKE: Record<string, string> = {
   V: "U",
 };
 
+/** A key in which characters that people mix up are one. */
+export function foldAlike(key: string): string {
+  return key.replace(/[OQDILBSZGV]/g, (c) => ALIKE[c] ?? c);
+}
+
 /** Looser key in which characters that people mix up are one. For suggestions only. */
 export function serialLoose(text: string): string {
-  return serialKey(text).replace(/[OQDILBSZGV]/g, (c) => ALIKE[c] ?? c);
+  return foldAlike(serialKey(text));
 }
 
 const ORDINALS = [
@@ -50,7 +64,9 @@ const ORDINALS = [
   "ninth",
   "tenth",
 ];
-const ordinal = (n: number) => ORDINALS[n - 1] ?? `${n}th`;
+const ordinal = (n: number) =>
+  ORDINALS[n - 1] ??
+  `${n}${n % 100 > 10 && n % 100 < 14 ? "th" : (["th", "st", "nd", "rd"][n % 10] ?? "th")}`;
 
 // Spelled so that two people on a noisy floor mean one character. Common practice, no source.
 const AS_IN: Record<string, string> = {
@@ -101,7 +117,8 @@ export type Difference = {
   words: string;
 };
 
-function place(text: string, at: number): string {
+/** "the fourth after the dash", "the second": where in a serial an index is, for the ear. */
+export function place(text: string, at: number): string {
   const dash = text.lastIndexOf("-", at);
   return dash >= 0 && at > dash ? `the ${ordinal(at - dash)} after the dash` : `the ${ordinal(at + 1)}`;
 }

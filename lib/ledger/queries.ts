@@ -11,7 +11,9 @@ import {
   sites,
   units,
 } from "@/db/schema/ledger";
-import { serialKey, serialLoose } from "@/lib/base/serial";
+import { alikeKeys, rankAlike } from "@/lib/base/alike";
+import { readings } from "@/lib/base/scan";
+import { serialKey } from "@/lib/base/serial";
 import type { Ctx } from "@/lib/ctx";
 import type { ImportView, Site, UnitHit } from "./schema";
 
@@ -74,11 +76,46 @@ export async function unitsBySerials(ctx: Ctx, serials: readonly string[]): Prom
   );
 }
 
-/** Serials that look like the one given: suggestions, never a silent correction. */
+/**
+ * Units whose serial a scan may mean, the likeliest first: as it stands, without a data identifier, out of
+ * an element string. More than one is a question for a person.
+ */
+export async function unitsByScan(ctx: Ctx, text: string): Promise<UnitHit[]> {
+  const keys = readings(text)
+    .filter((r) => r.firm)
+    .map((r) => serialKey(r.serial));
+  if (keys.length === 0) return [];
+  const found = await unitsBySerials(ctx, keys);
+  const rank = (u: UnitHit) => keys.indexOf(serialKey(u.serial));
+  return found.sort((a, b) => rank(a) - rank(b));
+}
+
+/** More units of one loose key than this differ in look-alikes alone, and no ranking helps. */
+const ALIKE_EACH = 50;
+
+/**
+ * Units whose serial looks like the one given, the nearest first: suggestions, never a silent
+ * correction, and never the unit of exactly this serial. All keys are looked up in unit_by_loose at once.
+ */
 export async function lookAlikes(ctx: Ctx, serial: string, limit = 3): Promise<UnitHit[]> {
-  const loose = serialLoose(serial);
-  if (loose.length < 4) return [];
-  return read(ctx, async (tx) => (await hits(tx, and(eq(units.serialLoose, loose)), limit)) as UnitHit[]);
+  const keys = alikeKeys(serial);
+  if (keys.length === 0) return [];
+  return read(ctx, async (tx) => {
+    // A look-up a key: with `= any` the planner expects a hit for each and reads the whole table of a middling ledger.
+    const near = await tx.execute<{ id: string; serial: string }>(sql`
+      select alike.id, alike.serial
+      from unnest(${sql.param(keys)}::text[]) as given(key)
+      cross join lateral (
+        select id, serial from unit
+        where serial_loose = given.key and serial_key <> ${serialKey(serial)} limit ${ALIKE_EACH}
+      ) as alike`);
+    const best = rankAlike(serial, near.rows)
+      .slice(0, limit)
+      .map((u) => u.id);
+    if (best.length === 0) return [];
+    const found = (await hits(tx, and(inArray(units.id, best)), best.length)) as UnitHit[];
+    return found.sort((a, b) => best.indexOf(a.unitId) - best.indexOf(b.unitId));
+  });
 }
 
 /** Units whose serial begins with, whose order equals or whose customer's name contains the text. */

@@ -5,7 +5,7 @@ import { accounts, models, units } from "@/db/schema/ledger";
 import { messages, outbox } from "@/db/schema/mail";
 import { serialKey } from "@/lib/base/serial";
 import type { Ctx } from "@/lib/ctx";
-import { findUnits, lookAlikes, unitBySerial } from "@/lib/ledger/queries";
+import { findUnits, lookAlikes, unitsByScan } from "@/lib/ledger/queries";
 import type { UnitHit } from "@/lib/ledger/schema";
 import type { MessageView } from "@/lib/mail/schema";
 import { factsSeen, moveSeen } from "./goodwill";
@@ -301,7 +301,9 @@ export async function find(ctx: Ctx, raw: string): Promise<Found> {
       order by t.last_entry_at desc limit 25`);
     return result.rows as { number: number; faultWords: string; customer: string; closed: boolean }[];
   });
-  const unit = await unitBySerial(ctx, text);
+  // A label's prefix may be part of another serial: where the ledger knows both readings, both are shown.
+  const scanned = await unitsByScan(ctx, text);
+  const unit = scanned.length === 1 ? scanned[0] : null;
   const ticketHits: FindHit[] = tickets_.map((t) => ({
     kind: "ticket",
     label: `Ticket ${t.number}`,
@@ -314,7 +316,7 @@ export async function find(ctx: Ctx, raw: string): Promise<Found> {
   // A serial with one open ticket is that ticket; without a ticket it is the unit.
   if (unit && open.length === 1) return { ...none, exact: `/desk/${open[0]!.number}`, hits: ticketHits };
   if (unit && ticketHits.length === 0) return { ...none, exact: unitHref(unit), hits: [] };
-  const unitHits: FindHit[] = (unit ? [unit] : await findUnits(ctx, text, 25)).map((u) => ({
+  const unitHits: FindHit[] = (scanned.length > 0 ? scanned : await findUnits(ctx, text, 25)).map((u) => ({
     kind: "unit",
     label: u.serial,
     detail: `${u.modelName}${u.accountName ? `, ${u.accountName}` : ""}`,

@@ -3,10 +3,17 @@ import { redirect } from "next/navigation";
 import { requireStaff } from "@/app/_edge/ctx";
 import { Empty } from "@/components/ui/empty";
 import { Tag } from "@/components/ui/tag";
+import { alikeWords } from "@/lib/base/alike";
 import { characterWords } from "@/lib/base/serial";
 import { find } from "@/lib/tickets/queries";
 
 export const metadata: Metadata = { title: "Found" };
+
+/** Differences as one sentence, told and heard alike. */
+function sentence(words: string[]): string {
+  const text = words.join("; ");
+  return text === "" ? "" : `${text[0]!.toUpperCase()}${text.slice(1)}.`;
+}
 
 export default async function Find({
   searchParams,
@@ -61,6 +68,7 @@ export default async function Find({
                       {u.modelName}
                       {u.accountName ? `, ${u.accountName}` : ""}
                     </span>
+                    <span className="differs">{sentence(alikeWords(found.text, u.serial))}</span>
                   </li>
                 ))}
               </ul>
