@@ -1,0 +1,129 @@
+import { enterAs, expect, test } from "./fixtures";
+
+/** Terms and decisions in a real browser: the editor with its preview, what if, and goodwill. */
+test.describe("terms and decisions", () => {
+  test.describe.configure({ mode: "serial", timeout: 180_000 });
+
+  test("an admin drafts the next issue: bad periods are refused at the field, the change is compared and counted, and published for good", async ({
+    page,
+  }) => {
+    await enterAs(page, "tobias@ostwick.example");
+    await page.goto("/terms");
+    await page
+      .locator("section, li, div", { has: page.getByRole("heading", { name: "Refurbished terms" }) })
+      .last()
+      .getByRole("button", { name: "Draft the next issue" })
+      .click();
+    await expect(page.getByRole("heading", { level: 1, name: /draft of issue 2/ })).toBeVisible();
+
+    await page.getByRole("link", { name: "Change clause 3.3" }).click();
+    const period = page.getByLabel("Period", { exact: true });
+    for (const [text, why] of [
+      ["P0D", "A period must be longer than nothing."],
+      ["P1.5M", "A period has whole parts only: write P45D, not P1.5M."],
+      ["P-3M", "A period cannot be negative."],
+    ] as const) {
+      await period.fill(text);
+      await page.getByRole("button", { name: /Keep this clause/ }).click();
+      await expect(page.locator("#f-period-error")).toHaveText(why);
+      await expect(period).toHaveValue(text);
+    }
+    await period.fill("P3M");
+    await page.getByRole("button", { name: /Keep this clause/ }).click();
+    await page.waitForURL((url) => !url.searchParams.has("clause"));
+    await expect(page.getByRole("link", { name: "Change clause 3.3" })).toBeVisible();
+    // Compared with the last issue, field by field.
+    await expect(page.getByText(/6 months \(P6M\)/).first()).toBeVisible();
+    await expect(page.getByText(/3 months \(P3M\)/).first()).toBeVisible();
+
+    await page.getByRole("button", { name: "Count what it would do" }).click();
+    await expect(page.getByText(/would be covered for a shorter time/).first()).toBeVisible({
+      timeout: 120_000,
+    });
+    await expect(
+      page
+        .getByRole("region", { name: /^Units/ })
+        .locator("tbody tr")
+        .first(),
+    ).toBeVisible();
+
+    await page.getByRole("link", { name: /^Publish issue 2/ }).click();
+    await expect(page.getByText("It can never be changed or taken back.")).toBeVisible();
+    await page.getByRole("button", { name: "Publish issue 2" }).click();
+    await expect(page.getByText(/it never changes/)).toBeVisible();
+    await expect(page.getByRole("link", { name: /^Change clause/ })).toHaveCount(0);
+  });
+
+  test("goodwill is asked by an agent, granted by a manager, and lets the agent authorize just that", async ({
+    browser,
+    page,
+  }) => {
+    await enterAs(page, "noor@ostwick.example");
+    // A ticket whose decision was no, and that nobody asked for yet.
+    const list = (await (await page.request.get("/api/v1/tickets?on=all")).json()) as {
+      groups: { rows: { number: number; rmaNumber: string | null; serial: string | null }[] }[];
+    };
+    let ticket: string | null = null;
+    for (const row of list.groups.flatMap((g) => g.rows).filter((r) => r.serial && !r.rmaNumber)) {
+      await page.goto(`/desk/${row.number}`);
+      await expect(page.getByRole("heading", { name: "Record" })).toBeVisible();
+      if ((await page.getByRole("button", { name: "Ask for goodwill" }).count()) === 0) continue;
+      if ((await page.getByText(/^Not covered:/).count()) === 0) continue;
+      ticket = `/desk/${row.number}`;
+      break;
+    }
+    expect(ticket, "a ticket of the demo whose decision was no").not.toBeNull();
+    await page.getByRole("button", { name: "Ask for goodwill" }).click();
+    await page.getByLabel("The remedy you wish for").selectOption("repair");
+    await page.getByLabel(/^Why/).fill("Too short");
+    await page.getByRole("button", { name: "Ask a manager" }).click();
+    await expect(page.locator("#f-reason-error")).toBeVisible();
+    await page.getByLabel(/^Why/).fill("They keep forty of ours and the drive failed three weeks late.");
+    await page.getByRole("button", { name: "Ask a manager" }).click();
+    await expect(page.getByRole("status").filter({ hasText: "Kept" })).toBeVisible();
+
+    const manager = await (await browser.newContext({ baseURL: new URL(page.url()).origin })).newPage();
+    await enterAs(manager, "anneke@ostwick.example");
+    await manager.goto("/goodwill");
+    const form = manager
+      .locator("li, article, section", { hasText: "They keep forty of ours" })
+      .last()
+      .locator("form");
+    await form.getByRole("button", { name: "Grant it" }).click();
+    await expect(manager.getByText("It is not answered yet")).toBeVisible();
+    await form.getByLabel(/May cost us at most/).fill("150");
+    await form.getByRole("button", { name: "Grant it" }).click();
+    await expect(manager.locator("form", { hasText: "They keep forty of ours" })).toHaveCount(0);
+    await manager.context().close();
+
+    await page.goto(ticket!);
+    await expect(page.getByText("Goodwill granted")).toBeVisible();
+    await page.getByRole("button", { name: "Authorize an RMA" }).click();
+    await expect(page.getByRole("radio")).toHaveCount(1);
+    await page.getByRole("button", { name: "Authorize and mail the traveler" }).click();
+    await expect(page.getByText(/RMA-\d+-[0-9A-Z] authorized/).first()).toBeVisible();
+    await expect(page.getByText(/by goodwill/).first()).toBeVisible();
+  });
+
+  test("a fact tried moves the decision beside it, and nothing is kept", async ({ page }) => {
+    await enterAs(page, "noor@ostwick.example");
+    await page.goto("/desk/find?q=OW4420-7K3QX");
+    await expect(page).toHaveURL(/\/desk\/\d+/);
+    await expect(page.getByRole("heading", { name: "Record" })).toBeVisible();
+    const entries = await page.locator(".entry").count();
+    await page.getByRole("link", { name: "What if a fact were other?" }).last().click();
+    await page.getByLabel("Claim day").fill("2199-01-01");
+    await page.getByRole("button", { name: "Try these facts" }).click();
+    const then = page.getByRole("region", { name: "With these facts" });
+    await expect(then.getByText(/^Not covered:/)).toBeVisible();
+    await expect(then.getByText(/now 1 January 2199/)).toBeVisible();
+    await expect(page.getByRole("region", { name: "As it stands" }).getByText(/^Not covered:/)).toHaveCount(
+      0,
+    );
+    await page.goto(`${page.url()}&period=P0D`);
+    await expect(page.locator("#f-period-error")).toHaveText("A period must be longer than nothing.");
+    await page.goBack();
+    await page.getByRole("link", { name: /^ticket \d+/ }).click();
+    await expect(page.locator(".entry")).toHaveCount(entries);
+  });
+});
