@@ -1,3 +1,4 @@
+import { LAW_CAUTION } from "../lib/coverage/law";
 import { Body, Container, Head, Hr, Html, Link, Preview, Section, Text } from "@react-email/components";
 import type { CSSProperties, ReactNode } from "react";
 
@@ -25,7 +26,15 @@ export function Letter({
   children,
   replies = true,
   rights = false,
-}: Sender & { preview: string; children: ReactNode; replies?: boolean; rights?: boolean }) {
+  law,
+}: Sender & {
+  preview: string;
+  children: ReactNode;
+  replies?: boolean;
+  rights?: boolean;
+  /** The notice for this buyer and country, where the letter knows them. */
+  law?: { title: string; words: string };
+}) {
   return (
     <Html lang="en">
       <Head>
@@ -43,7 +52,11 @@ export function Letter({
           <Hr style={{ border: 0, borderTop: `2px solid ${INK.ink}`, margin: "12px 0 24px" }} />
           {children}
           <Hr style={{ border: 0, borderTop: `1px solid ${INK.rule}`, margin: "26px 0 14px" }} />
-          {rights ? (
+          {law ? (
+            <Small>
+              <strong>{law.title}.</strong> {law.words} {LAW_CAUTION}
+            </Small>
+          ) : rights ? (
             <Small>
               Your rights by law stand beside these terms; nothing here takes any of them away. If you are not
               sure what they are where you live, ask somebody licensed to advise you there.

@@ -17,7 +17,12 @@ import {
 export function RmaAuthorized(m: TemplateProps["rma_authorized"] & Sender) {
   const goodwill = m.goodwill ?? [];
   return (
-    <Letter seller={m.seller} preview={`Send it by ${m.sendBy}. The traveler is attached.`} rights>
+    <Letter
+      seller={m.seller}
+      preview={`Send it by ${m.sendBy}. The traveler is attached.`}
+      rights
+      law={m.law}
+    >
       <Greeting name={m.personName} />
       <Answer>Your return is authorized.</Answer>
       <P>

@@ -8,6 +8,7 @@ export function RmaDeclined(m: TemplateProps["rma_declined"] & Sender) {
       seller={m.seller}
       preview="What we found, what would change it, and what we can do instead."
       rights
+      law={m.law}
     >
       <Greeting name={m.personName} />
       <P>

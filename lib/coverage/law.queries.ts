@@ -1,9 +1,9 @@
-import { desc, lte } from "drizzle-orm";
+import { desc, eq, lte } from "drizzle-orm";
 import { read } from "@/db/client";
-import { lawNotices } from "@/db/schema/coverage";
+import { coverageDecisions, lawNotices } from "@/db/schema/coverage";
 import type { Ctx } from "@/lib/ctx";
 import { BUILT_IN, noticeFor, type LawNotice } from "./law";
-import type { LawRegion } from "./schema";
+import type { DecideInput, LawRegion } from "./schema";
 
 const columns = {
   region: lawNotices.region,
@@ -28,6 +28,20 @@ export async function lawNotice(
       .limit(500),
   );
   return noticeFor(kept, at);
+}
+
+/** The notice beside a stored decision: by the buyer and country it was decided for, on its claim's day. */
+export async function lawBeside(ctx: Ctx, decisionId: string): Promise<LawNotice | null> {
+  const [row] = await read(ctx, (tx) =>
+    tx
+      .select({ inputs: coverageDecisions.inputs })
+      .from(coverageDecisions)
+      .where(eq(coverageDecisions.id, decisionId))
+      .limit(1),
+  );
+  if (!row) return null;
+  const { sale, claimOn } = row.inputs as DecideInput;
+  return lawNotice(ctx, { country: sale.country, buyerKind: sale.buyerKind, onDay: claimOn });
 }
 
 export type NoticeRow = LawNotice & {

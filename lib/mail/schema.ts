@@ -27,6 +27,8 @@ export const TEMPLATES = [
 export type TemplateName = (typeof TEMPLATES)[number];
 
 const Line = z.string();
+/** Rights by law that stand beside the terms, for the buyer and country of the sale. */
+const Law = z.object({ title: Line, words: Line }).optional();
 /** What each template needs: props in, markup out. */
 export const TEMPLATE_PROPS = {
   acknowledgement: z.object({ personName: Line, ticketNumber: z.number(), subject: Line }),
@@ -58,6 +60,7 @@ export const TEMPLATE_PROPS = {
     address: z.array(Line),
     fees: z.array(Line),
     cautions: z.array(Line),
+    law: Law,
     link: Line,
     /** Serials that come back by goodwill, outside the terms. Left out: none. */
     goodwill: z.array(Line).optional(),
@@ -65,6 +68,7 @@ export const TEMPLATE_PROPS = {
   rma_declined: z.object({
     personName: Line,
     ticketNumber: z.number(),
+    law: Law,
     serial: Line,
     why: z.array(Line),
     wouldChange: z.array(Line),

@@ -13,6 +13,7 @@ import { parse } from "@/lib/base/parse";
 import { ok, refuse, type Result } from "@/lib/base/result";
 import { showDay } from "@/lib/base/show";
 import { goodwillOfTicket } from "@/lib/coverage/goodwill.queries";
+import { lawBeside } from "@/lib/coverage/law.queries";
 import { REMEDY_WORDS, type Decision } from "@/lib/coverage/schema";
 import { actorName, type Ctx, type TxCtx } from "@/lib/ctx";
 import { env } from "@/lib/env";
@@ -265,6 +266,7 @@ export async function authorizeRma(
           fees: [...new Set(fees)],
           cautions: cautionsFor(lines).map((c) => `${c.title}. ${c.detail}`),
           link: `${env().MENDBAY_URL}/rma/${number}`,
+          law: (await lawBeside(ctx, newest(lines[0]!.unitId)!.id)) ?? undefined,
           goodwill: given.map((g) => g.serial),
         },
         ticketId: v.ticketId,
@@ -440,7 +442,11 @@ export async function declineClaim(
     const open = await openLineOf(ctx, unit.unitId);
     if (open) return refuse("conflict", `${unit.serial} is on ${open.rmaNumber}. Withdraw that first.`);
     const [decision] = await ctx.tx
-      .select({ answer: coverageDecisions.answer, outcome: coverageDecisions.outcome })
+      .select({
+        id: coverageDecisions.id,
+        answer: coverageDecisions.answer,
+        outcome: coverageDecisions.outcome,
+      })
       .from(coverageDecisions)
       .where(and(eq(coverageDecisions.ticketId, v.ticketId), eq(coverageDecisions.unitId, unit.unitId)))
       .orderBy(sql`${coverageDecisions.madeAt} desc`)
@@ -460,6 +466,7 @@ export async function declineClaim(
         personName: ticket.personName,
         ticketNumber: ticket.number,
         serial: unit.serial,
+        law: (await lawBeside(ctx, decision.id)) ?? undefined,
         why: [...answer.reasons.map((r) => r.customer), v.reason],
         wouldChange: answer.wouldChange.map((w) => w.customer),
         offers: [

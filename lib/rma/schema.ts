@@ -1,4 +1,5 @@
 import { z } from "zod";
+import { forbiddenIn } from "../coverage/law";
 import { REMEDIES } from "../coverage/schema";
 
 // Lists here become PostgreSQL enums in db/schema/rma.ts: add at the end, with a migration.
@@ -48,7 +49,19 @@ export const AuthorizeRma = z.object({
 export const DeclineRma = z.object({
   ticketId: z.uuid(),
   ticketUnitId: z.uuid(),
-  reason: z.string().trim().min(3, "Say why, in words the customer can read.").max(4000),
+  reason: z
+    .string()
+    .trim()
+    .min(3, "Say why, in words the customer can read.")
+    .max(4000)
+    .superRefine((text, at) => {
+      const found = forbiddenIn(text);
+      if (found)
+        at.addIssue({
+          code: "custom",
+          message: `“${found}” says more than our terms can. Write “under our warranty”; the law stands beside it.`,
+        });
+    }),
 });
 export const MarkSent = z.object({
   rmaId: z.uuid(),

@@ -2,11 +2,13 @@ import { serialInPath } from "@/lib/base/serial";
 import type { Metadata } from "next";
 import { notFound } from "next/navigation";
 import { requireCustomer } from "@/app/_edge/ctx";
+import { LawAside } from "@/components/coverage/law-notice";
 import { PortalCoverBar } from "@/components/coverage/portal-bar";
 import { Button } from "@/components/ui/button";
 import { Tag } from "@/components/ui/tag";
 import { civilDayIn } from "@/lib/base/civil";
 import { showDay } from "@/lib/base/show";
+import { lawNotice } from "@/lib/coverage/law.queries";
 import { coverFor } from "@/lib/coverage/queries";
 import { env } from "@/lib/env";
 import { unitBySerial } from "@/lib/ledger/queries";
@@ -24,6 +26,7 @@ export default async function Unit({ params }: { params: Promise<{ serial: strin
   const today = civilDayIn(ctx.now, env().MENDBAY_ZONE);
   const view = await coverFor(ctx, hit.unitId, today);
   if (!view) notFound();
+  const law = await lawNotice(ctx, { country: view.country, buyerKind: view.buyerKind, onDay: today });
   const own = view.rows.find((r) => r.unitId === hit.unitId && r.kind === "cover");
   const doa = view.rows.find((r) => r.unitId === hit.unitId && r.kind === "doa");
   const { rows: open } = await cases(ctx, { before: null, limit: 10, unitId: hit.unitId });
@@ -111,7 +114,7 @@ export default async function Unit({ params }: { params: Promise<{ serial: strin
           </tbody>
         </table>
       </div>
-      <p className="hint">Your rights by law stand beside these terms and are not made smaller by them.</p>
+      <LawAside notice={law} />
     </>
   );
 }

@@ -2,12 +2,14 @@ import { serialInPath } from "@/lib/base/serial";
 import type { Metadata } from "next";
 import { notFound } from "next/navigation";
 import { requireCustomer } from "@/app/_edge/ctx";
+import { LawAside } from "@/components/coverage/law-notice";
 import { PackDrawing } from "@/components/rma/pack-drawing";
 import { Pin } from "@/components/ui/pin";
 import { ButtonLink } from "@/components/ui/button";
 import { CautionStrip } from "@/components/ui/caution-strip";
 import { Tag } from "@/components/ui/tag";
 import { showDay, showInstant } from "@/lib/base/show";
+import { lawBeside } from "@/lib/coverage/law.queries";
 import { REMEDY_WORDS, type Remedy } from "@/lib/coverage/schema";
 import { env } from "@/lib/env";
 import { rmaByNumber } from "@/lib/rma/queries";
@@ -29,6 +31,8 @@ export default async function Rma({ params }: { params: Promise<{ number: string
   const ctx = await requireCustomer();
   const rma = await rmaByNumber(ctx, serialInPath((await params).number));
   if (!rma) notFound();
+  const decisionId = rma.lines.find((l) => l.decisionId)?.decisionId;
+  const law = decisionId ? await lawBeside(ctx, decisionId) : null;
   const at = STAGES.indexOf(rma.state as (typeof STAGES)[number]);
   const ended = ["withdrawn", "expired", "declined"].includes(rma.state);
   const sendBy = rma.expiresOn ? showDay(rma.expiresOn) : "";
@@ -116,7 +120,7 @@ export default async function Rma({ params }: { params: Promise<{ number: string
       <p>
         <a href={`/cases/${rma.ticketNumber}`}>Read or answer in your case {rma.ticketNumber}</a>
       </p>
-      <p className="hint">Your rights by law stand beside these terms and are not made smaller by them.</p>
+      {law ? <LawAside notice={law} /> : null}
     </>
   );
 }

@@ -1,12 +1,14 @@
 import type { Metadata } from "next";
 import { notFound } from "next/navigation";
 import { requireCustomer } from "@/app/_edge/ctx";
+import { LawAside } from "@/components/coverage/law-notice";
 import { PortalCoverBar } from "@/components/coverage/portal-bar";
 import { Pin } from "@/components/ui/pin";
 import { ButtonLink } from "@/components/ui/button";
 import { Tag } from "@/components/ui/tag";
 import { civilDayIn } from "@/lib/base/civil";
 import { capital, showDay } from "@/lib/base/show";
+import { lawBeside } from "@/lib/coverage/law.queries";
 import { decisionsOf } from "@/lib/coverage/queries";
 import { REMEDY_WORDS } from "@/lib/coverage/schema";
 import { env } from "@/lib/env";
@@ -22,6 +24,7 @@ export default async function DecisionLetter({ params }: { params: Promise<{ num
   const [decisions, rmas] = [await decisionsOf(ctx, t.id), await rmasOfTicket(ctx, t.id)];
   const newest = decisions.at(-1);
   if (!newest) notFound();
+  const law = await lawBeside(ctx, newest.id);
   const d = newest.answer;
   const unit = t.units.find((u) => u.id === newest.ticketUnitId);
   const covers = d.outcome === "covered" || d.outcome === "covered_doa";
@@ -142,10 +145,7 @@ export default async function DecisionLetter({ params }: { params: Promise<{ num
         Warranty desk, {showDay(civilDayIn(newest.madeAt, env().MENDBAY_ZONE))},{" "}
         <a href={`mailto:${env().MENDBAY_MAIL_FROM}`}>{env().MENDBAY_MAIL_FROM}</a>
       </p>
-      <p className="hint">
-        Your rights by law stand beside these terms and are not made smaller by them. Local law comes first;
-        ask licensed advice where it matters.
-      </p>
+      {law ? <LawAside notice={law} /> : null}
     </>
   );
 }

@@ -75,7 +75,6 @@ export function RemedyForm(p: {
         </Button>
         <a href="decision">Back to the decision</a>
       </p>
-      <p className="hint">Your rights by law stand beside these terms and are not made smaller by them.</p>
     </form>
   );
 }

@@ -1,7 +1,9 @@
 import type { Metadata } from "next";
 import { notFound, redirect } from "next/navigation";
 import { requireCustomer } from "@/app/_edge/ctx";
+import { LawAside } from "@/components/coverage/law-notice";
 import { Tag } from "@/components/ui/tag";
+import { lawBeside } from "@/lib/coverage/law.queries";
 import { decisionsOf } from "@/lib/coverage/queries";
 import { rmasOfTicket } from "@/lib/rma/queries";
 import { ticketByNumber } from "@/lib/tickets/queries";
@@ -19,6 +21,7 @@ export default async function RemedyPage({ params }: { params: Promise<{ number:
   const unit = t.units.find((u) => u.id === newest?.ticketUnitId);
   if (!newest || !unit || (newest.answer.outcome !== "covered" && newest.answer.outcome !== "covered_doa"))
     redirect(`/cases/${t.number}`);
+  const law = await lawBeside(ctx, newest.id);
   return (
     <>
       <p className="prow">
@@ -32,6 +35,7 @@ export default async function RemedyPage({ params }: { params: Promise<{ number:
         fees={newest.answer.fees.map((f) => `${f.words} ${(f.cents / 100).toFixed(2)} EUR.`)}
         battery={unit.answers.battery ?? "inside"}
       />
+      {law ? <LawAside notice={law} /> : null}
     </>
   );
 }
