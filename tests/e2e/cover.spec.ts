@@ -67,13 +67,13 @@ test.describe("terms and decisions", () => {
     for (const row of list.groups.flatMap((g) => g.rows).filter((r) => r.serial && !r.rmaNumber)) {
       await page.goto(`/desk/${row.number}`);
       await expect(page.getByRole("heading", { name: "Record" })).toBeVisible();
-      if ((await page.getByRole("button", { name: "Ask for goodwill" }).count()) === 0) continue;
+      if ((await page.getByRole("link", { name: "Ask for goodwill" }).count()) === 0) continue;
       if ((await page.getByText(/^Not covered:/).count()) === 0) continue;
       ticket = `/desk/${row.number}`;
       break;
     }
     expect(ticket, "a ticket of the demo whose decision was no").not.toBeNull();
-    await page.getByRole("button", { name: "Ask for goodwill" }).click();
+    await page.getByRole("link", { name: "Ask for goodwill" }).click();
     await page.getByLabel("The remedy you wish for").selectOption("repair");
     await page.getByLabel(/^Why/).fill("Too short");
     await page.getByRole("button", { name: "Ask a manager" }).click();
