@@ -93,6 +93,9 @@ export default async function Terms() {
           </ol>
         </section>
       ))}
+      <p>
+        <Link href="/terms/notices">Rights by law, beside the terms</Link>
+      </p>
     </main>
   );
 }

@@ -4,12 +4,14 @@ import { requireStaff } from "@/app/_edge/ctx";
 import { CoverLegend } from "@/components/coverage/glyph";
 import { coverNodes, rulerRows } from "@/components/coverage/rows";
 import { Ruler } from "@/components/coverage/ruler";
+import { LawAside } from "@/components/coverage/law-notice";
 import { CoverTree } from "@/components/coverage/tree";
 import { DueClock } from "@/components/tickets/due";
 import { Tag } from "@/components/ui/tag";
 import { may } from "@/lib/auth/rules";
 import { civilDayIn } from "@/lib/base/civil";
 import { goodwillOfTicket } from "@/lib/coverage/goodwill.queries";
+import { lawNotice } from "@/lib/coverage/law.queries";
 import { coverFor, decisionInputs, decisionsOf, differencesOf } from "@/lib/coverage/queries";
 import { evidenceOf } from "@/lib/evidence/queries";
 import { defaultSite } from "@/lib/ledger/queries";
@@ -56,6 +58,9 @@ export default async function Ticket({
   const goodwill = await goodwillOfTicket(ctx, t.id);
   const newest = decisions.at(-1);
   const known = newest ? await decisionInputs(ctx, newest.id) : null;
+  const law = view
+    ? await lawNotice(ctx, { country: view.country, buyerKind: view.buyerKind, onDay: t.claimOn })
+    : null;
   const clock = clockView(t, ctx.now, site);
   const rma = rmas[0];
   const done = (await searchParams).done;
@@ -219,6 +224,7 @@ export default async function Ticket({
                 todayOn={today}
               />
               <CoverLegend states={["covered", "doa", "ended", "person"]} />
+              {law ? <LawAside notice={law} staff /> : null}
             </>
           ) : (
             <p className="q">Tie a unit, and its tree stands here.</p>

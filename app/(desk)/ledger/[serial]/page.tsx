@@ -4,12 +4,14 @@ import { notFound } from "next/navigation";
 import { requireStaff } from "@/app/_edge/ctx";
 import { CoverLegend } from "@/components/coverage/glyph";
 import { coverNodes, rulerRows } from "@/components/coverage/rows";
+import { LawAside } from "@/components/coverage/law-notice";
 import { Ruler } from "@/components/coverage/ruler";
 import { CoverTree } from "@/components/coverage/tree";
 import { Tag } from "@/components/ui/tag";
 import { may } from "@/lib/auth/rules";
 import { civilDayIn } from "@/lib/base/civil";
 import { showDay } from "@/lib/base/show";
+import { lawNotice } from "@/lib/coverage/law.queries";
 import { coverFor } from "@/lib/coverage/queries";
 import { env } from "@/lib/env";
 import { salesOf, unitBySerial } from "@/lib/ledger/queries";
@@ -38,6 +40,9 @@ export default async function UnitPage({
   if (!unit) notFound();
   const today = civilDayIn(ctx.now, env().MENDBAY_ZONE);
   const view = await coverFor(ctx, unit.unitId, today);
+  const law = view
+    ? await lawNotice(ctx, { country: view.country, buyerKind: view.buyerKind, onDay: today })
+    : null;
   const sales = await salesOf(ctx, unit.unitId);
   const tickets = (await find(ctx, unit.serial)).hits.filter((h) => h.kind === "ticket");
   return (
@@ -121,6 +126,7 @@ export default async function UnitPage({
               .
             </p>
           ) : null}
+          {law ? <LawAside notice={law} staff /> : null}
           {view && view.pauses.length + view.transfers.length > 0 ? (
             <ul className="plist">
               {view.transfers.map((t) => (
