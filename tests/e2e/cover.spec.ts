@@ -97,9 +97,8 @@ test.describe("terms and decisions", () => {
     await manager.context().close();
 
     await page.goto(ticket!);
-    await expect(page.getByText("Goodwill granted")).toBeVisible();
+    await expect(page.getByText(/grants goodwill for/)).toBeVisible();
     await page.getByRole("button", { name: "Authorize an RMA" }).click();
-    await expect(page.getByRole("radio")).toHaveCount(1);
     await page.getByRole("button", { name: "Authorize and mail the traveler" }).click();
     await expect(page.getByText(/RMA-\d+-[0-9A-Z] authorized/).first()).toBeVisible();
     await expect(page.getByText(/by goodwill/).first()).toBeVisible();
