@@ -152,12 +152,12 @@ export function alikeWords(query: string, serial: string, limit = 3): string[] {
       const g = given.slice(i, i + taken);
       const k = known.key.slice(j, j + used);
       if (g === k) return [];
-      if (kind === "swap") return [`${where(j)} and the one behind it change places`];
+      if (kind === "swap") return [`${where(j)} and the next change places`];
       if (kind === "missing") return [`${where(j)}, ${characterWords(k)}, was left out`];
       if (kind === "extra")
-        return [`one too many: ${characterWords(g)}, ${j === 0 ? "in front" : `behind ${where(j - 1)}`}`];
+        return [`one too many: ${characterWords(g)}, ${j === 0 ? "in front" : `following ${where(j - 1)}`}`];
       const [is, not] = [k, g].map((c) => (c.length === 2 ? c : characterWords(c)));
-      return [`${where(j)} ${used === 2 ? "and the one behind it are" : "is"} ${is}, not ${not}`];
+      return [`${where(j)} ${used === 2 ? "and the next are" : "is"} ${is}, not ${not}`];
     });
   const within = given !== bareKey(cleanScan(query)) && given !== bareKey(query) ? [`read as ${text}`] : [];
   const shown = [...within, ...words];

@@ -263,19 +263,15 @@ describe("what differs, in words", () => {
       "OW4420-7K3QX",
       ["the fourth after the dash is the letter Q, as in quay, not the digit zero"],
     ],
-    ["OW4420-7K3XQ", "OW4420-7K3QX", ["the fourth after the dash and the one behind it change places"]],
+    ["OW4420-7K3XQ", "OW4420-7K3QX", ["the fourth after the dash and the next change places"]],
     ["OW4420-7KQX", "OW4420-7K3QX", ["the third after the dash, the digit three, was left out"]],
     [
       "OW4420-7K3QXR",
       "OW4420-7K3QX",
-      ["one too many: the letter R, as in rail, behind the fifth after the dash"],
+      ["one too many: the letter R, as in rail, following the fifth after the dash"],
     ],
     ["OVV4420-7K3QX", "OW4420-7K3QX", ["the second is the letter W, as in west, not VV"]],
-    [
-      "OW4420-7K3QX",
-      "OVV4420-7K3QX",
-      ["the second and the one behind it are VV, not the letter W, as in west"],
-    ],
+    ["OW4420-7K3QX", "OVV4420-7K3QX", ["the second and the next are VV, not the letter W, as in west"]],
     ["S OW4420-7K3QX", "OW4420-7K3QX", ["read as OW4420-7K3QX"]],
     ["ow4420 7k3qx", "OW4420-7K3QX", []],
   ] as [string, string, string[]][])
