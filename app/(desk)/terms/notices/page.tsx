@@ -55,10 +55,10 @@ export default async function Notices({ searchParams }: { searchParams: Promise<
             {g.rows.map((n) => (
               <li
                 key={`${n.effectiveOn}${n.by ? "" : " built in"}`}
-                className={n.state === "shown" ? "on" : undefined}
+                className={n.state === "shown" && g.rows.length > 1 ? "on" : undefined}
                 aria-current={n.state === "shown" ? "true" : undefined}
               >
-                {n.state === "shown" ? <Pin size={11} /> : null}
+                {n.state === "shown" && g.rows.length > 1 ? <Pin size={11} /> : null}
                 <h3>{n.title}</h3>
                 <p className="q s">{capital(when(n))}</p>
                 {n.state === "past" ? (
