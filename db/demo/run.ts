@@ -4,6 +4,7 @@ import { issueCode, keepPerson } from "@/lib/auth/commands";
 import { addDays, civilDayIn } from "@/lib/base/civil";
 import { must } from "@/lib/base/result";
 import { publishTerms } from "@/lib/coverage/commands";
+import { noteGivenOn } from "@/lib/coverage/holding.commands";
 import type { Actor, Ctx } from "@/lib/ctx";
 import { handle as applyImport } from "@/lib/jobs/handlers/applyImport";
 import { addStock, keepSite, moveUnit, previewImport, startImport } from "@/lib/ledger/commands";
@@ -522,6 +523,21 @@ for (const n of [1, 2]) {
     null,
     replyAddress(about.number, about.email),
   );
+}
+
+// ---- one that was given on without a word to us: its claim waits for the written notice
+const given = choose({ family: "system", fromDays: 420, toDays: 120, customer: "PINNOCK" });
+if (given) {
+  const s = recent(30);
+  must(
+    await noteGivenOn(s.agent, {
+      unitId: given.unitId,
+      accountCode: "LOWMERE",
+      onDay: addDays(today, -12),
+    }),
+  );
+  const [faultClass, words] = fault("system");
+  await byPortal(s, { ...given, customer: "LOWMERE", email: "dana@lowmere.example" }, faultClass, words, 0);
 }
 
 // ---- mails of the past were sent in the past
