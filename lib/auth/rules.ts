@@ -15,6 +15,7 @@ export const MAY = {
   "ledger.give_on": ["agent", "manager", "admin", "job"],
   "ledger.pause": ["agent", "manager", "admin", "job"],
   "ledger.move": ["warehouse", "agent", "manager", "job"],
+  "site.write": ["admin", "job"],
   "terms.write": ["admin", "job"],
   "terms.read": ["agent", "warehouse", "manager", "admin", "job", "customer"],
   "cover.refresh": ["admin", "warehouse", "agent", "manager", "job"],

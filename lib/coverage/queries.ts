@@ -1,4 +1,4 @@
-import { and, asc, desc, eq, inArray, isNull, sql } from "drizzle-orm";
+import { and, asc, desc, eq, gt, gte, inArray, isNull, lte, sql } from "drizzle-orm";
 import { read, type Tx } from "@/db/client";
 import { clauses, coverageDecisions, coverWindows, terms, termsVersions } from "@/db/schema/coverage";
 import {
@@ -525,6 +525,29 @@ export async function coverFor(ctx: Ctx, unitId: string, onDay: string): Promise
     unread,
     tree,
   };
+}
+
+/** Sales with a DOA window that ends about some days: those a changed holiday may move. A page at a time. */
+export async function salesEndingAbout(
+  ctx: Ctx,
+  ask: { from: string; to: string; after: string | null; limit: number },
+): Promise<string[]> {
+  const rows = await read(ctx, (tx) =>
+    tx
+      .selectDistinct({ id: coverWindows.saleLineId })
+      .from(coverWindows)
+      .where(
+        and(
+          eq(coverWindows.kind, "doa"),
+          gte(coverWindows.lastOn, ask.from),
+          lte(coverWindows.lastOn, ask.to),
+          ask.after ? gt(coverWindows.saleLineId, ask.after) : undefined,
+        ),
+      )
+      .orderBy(asc(coverWindows.saleLineId))
+      .limit(ask.limit),
+  );
+  return rows.map((r) => r.id);
 }
 
 export type CoverSummary = {

@@ -8,6 +8,7 @@ export const JOBS = {
   "file.check": z.object({ fileId: z.uuid() }),
   "ledger.apply_import": z.object({ importId: z.uuid() }),
   "terms.preview": z.object({ previewId: z.uuid() }),
+  "cover.follow_days": z.object({ from: z.iso.date(), to: z.iso.date() }),
 } as const;
 
 export type JobName = keyof typeof JOBS;

@@ -352,6 +352,18 @@ export async function defaultSite(ctx: Ctx): Promise<Site> {
   };
 }
 
+/** Holidays of a site with their names, in order. */
+export async function holidaysOf(ctx: Ctx, siteId: string): Promise<{ day: string; name: string }[]> {
+  return read(ctx, (tx) =>
+    tx
+      .select({ day: holidays.day, name: holidays.name })
+      .from(holidays)
+      .where(eq(holidays.siteId, siteId))
+      .orderBy(asc(holidays.day))
+      .limit(2000),
+  );
+}
+
 export async function contactByEmail(
   ctx: Ctx,
   email: string,

@@ -95,6 +95,8 @@ export default async function Terms() {
       ))}
       <p>
         <Link href="/terms/notices">Rights by law, beside the terms</Link>
+        {" · "}
+        <Link href="/terms/calendar">Working days and holidays</Link>
       </p>
     </main>
   );

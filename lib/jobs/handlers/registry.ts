@@ -14,4 +14,5 @@ export const HANDLERS: { [N in JobName]?: () => Promise<{ handle: Handler<N> }> 
   "file.check": () => import("./checkFile"),
   "ledger.apply_import": () => import("./applyImport"),
   "terms.preview": () => import("./preview"),
+  "cover.follow_days": () => import("./followDays"),
 };
