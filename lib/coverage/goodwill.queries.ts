@@ -1,5 +1,6 @@
-import { sql, type SQL } from "drizzle-orm";
+import { type SQL, eq, sql } from "drizzle-orm";
 import { read, type Tx } from "@/db/client";
+import { goodwills } from "@/db/schema/coverage";
 import { may, permit } from "@/lib/auth/rules";
 import { addPeriod, instantAt } from "@/lib/base/civil";
 import { ok, type Result } from "@/lib/base/result";
@@ -156,6 +157,20 @@ export async function openGoodwills(ctx: Ctx): Promise<{ open: number; toAnswer:
   );
   const { open, others } = found.rows[0]!;
   return { open, toAnswer: may(ctx, "goodwill.answer") ? others : 0 };
+}
+
+/** What is ours alone of a ticket's goodwill, by its id: the manager's words and the limit. None for customers. */
+export type OursOfGoodwill = ReadonlyMap<string, { words: string; limitCents: number | null }>;
+export async function oursOfGoodwill(ctx: Ctx, ticketId: string): Promise<OursOfGoodwill> {
+  if (ctx.actor.kind === "customer" || ctx.actor.kind === "anonymous") return new Map();
+  const rows = await read(ctx, (tx) =>
+    tx
+      .select({ id: goodwills.id, words: goodwills.answer, limitCents: goodwills.limitCents })
+      .from(goodwills)
+      .where(eq(goodwills.ticketId, ticketId))
+      .limit(200),
+  );
+  return new Map(rows.map(({ id, ...ours }) => [id, ours]));
 }
 
 export type UnitGoodwill = {

@@ -241,10 +241,7 @@ export async function authorizeRma(
           lines: lines.map((l) => ({ serial: l.serial, what: l.slot ?? l.modelName })),
           dueOn: expiresOn,
           ...(given.length > 0
-            ? {
-                goodwill: given.map(({ goodwillId, ref, serial }) => ({ goodwillId, ref, serial })),
-                limitCents: given.reduce((sum, g) => sum + g.limitCents, 0),
-              }
+            ? { goodwill: given.map(({ goodwillId, ref, serial }) => ({ goodwillId, ref, serial })) }
             : {}),
         },
       });

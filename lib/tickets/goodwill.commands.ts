@@ -173,8 +173,9 @@ export async function answerGoodwill(
         goodwillId: row.id,
         decisionId: newest.id,
         unitSerial: serial,
-        managerWords: v.words,
-        ...granted,
+        // A grant is seen by the customer, under whose role the database shows an entry whole: what it
+        // may cost us and the manager's words stay in the ask's own row.
+        ...(granted ? { remedy: granted.remedy } : {}),
         ...(messageId ? { messageId } : {}),
       },
       customerSees: granted !== null,

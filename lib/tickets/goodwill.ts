@@ -188,10 +188,5 @@ export const exceptionLetter = (serial: string, remedy: Remedy): string =>
     "You need do nothing yet. What to do next comes with our next mail.",
   ].join("\n\n");
 
-const OURS = ["limitCents", "managerWords"];
-/** An entry's facts without what is ours alone, as a customer gets them. */
-export const factsSeen = (data: Record<string, unknown>): Record<string, unknown> =>
-  Object.fromEntries(Object.entries(data).filter(([name]) => !OURS.includes(name)));
-
 /** What we are about to do, as a customer gets it: that somebody asked a manager is ours alone. */
 export const moveSeen = (waitingFor: string): string => (/goodwill/.test(waitingFor) ? "answer" : waitingFor);

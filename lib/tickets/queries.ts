@@ -8,7 +8,7 @@ import type { Ctx } from "@/lib/ctx";
 import { findUnits, lookAlikes, unitsByScan } from "@/lib/ledger/queries";
 import type { UnitHit } from "@/lib/ledger/schema";
 import type { MessageView } from "@/lib/mail/schema";
-import { factsSeen, moveSeen } from "./goodwill";
+import { moveSeen } from "./goodwill";
 import type { EntryView, TieState, WaitingOn } from "./schema";
 
 export type DeskRow = {
@@ -222,7 +222,7 @@ export async function ticketByNumber(ctx: Ctx, number: number): Promise<TicketVi
         actorName: e.actorName,
         customerSees: e.customerSees,
         line: e.line,
-        data: theirs ? factsSeen(e.data) : e.data,
+        data: e.data,
       })),
       messages: Object.fromEntries(messageRows.map(({ html, ...m }) => [m.id, { ...m, hasHtml: html }])),
     };

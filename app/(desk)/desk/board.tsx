@@ -15,7 +15,15 @@ import type { DeskRowView, DeskView } from "@/lib/tickets/schema";
 import { Live } from "./query";
 
 type Held = { id: string; subject: string; fromEmail: string; reason: string };
-type Props = { first: DeskView; q: string; when: string; held: Held[]; heldCount: number };
+type Props = {
+  first: DeskView;
+  q: string;
+  when: string;
+  held: Held[];
+  heldCount: number;
+  /** "Two asks for goodwill wait for you", for who answers them. */
+  goodwill: string | null;
+};
 
 /** Typing belongs to the field it is typed in. */
 const inField = (t: EventTarget | null) =>
@@ -29,7 +37,7 @@ export function DeskBoard(props: Props) {
   );
 }
 
-function Board({ first, q, when, held, heldCount }: Props) {
+function Board({ first, q, when, held, heldCount, goodwill }: Props) {
   const router = useRouter();
   const { data, isError } = useQuery({
     queryKey: ["tickets", q],
@@ -82,6 +90,12 @@ function Board({ first, q, when, held, heldCount }: Props) {
           <h1>{data.sentence}</h1>
           <p>
             {data.second} {when}
+            {goodwill ? (
+              <>
+                {" "}
+                <Link href="/goodwill">{goodwill}</Link>
+              </>
+            ) : null}
             {isError ? " The line to the server is down; what you see may be old." : ""}
           </p>
         </div>

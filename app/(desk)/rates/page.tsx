@@ -1,9 +1,11 @@
 import type { Metadata } from "next";
+import Link from "next/link";
 import { notFound } from "next/navigation";
 import { requireStaff } from "@/app/_edge/ctx";
 import { grouped, years } from "@/components/reliability/axes";
 import { Empty } from "@/components/ui/empty";
 import { plural, showDay } from "@/lib/base/show";
+import { openGoodwills } from "@/lib/coverage/goodwill.queries";
 import { defaultSite } from "@/lib/ledger/queries";
 import { rates, ratesChoices, survival, triangle } from "@/lib/reliability/queries";
 import type { RatesFilter, RatesView } from "@/lib/reliability/schema";
@@ -30,6 +32,7 @@ export default async function Rates({
   if (!view.ok || !curve.ok || !months.ok || !choices.ok) notFound();
   const { zone } = await defaultSite(ctx);
   const { filter } = view.value;
+  const goodwill = await openGoodwills(ctx);
   return (
     <main className="rates" id="main">
       <h1>Which parts fail, and how sure we are</h1>
@@ -48,6 +51,14 @@ export default async function Rates({
           </div>
         </div>
       )}
+      <p>
+        <Link href="/goodwill">
+          Goodwill
+          {goodwill && goodwill.open > 0
+            ? `: ${goodwill.open} asked and not answered yet`
+            : ", asked and granted"}
+        </Link>
+      </p>
       <Method zone={zone} />
     </main>
   );

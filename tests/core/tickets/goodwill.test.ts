@@ -6,7 +6,6 @@ import { renderMail } from "@/lib/mail/render.io";
 import {
   centsFrom,
   exceptionLetter,
-  factsSeen,
   grantFor,
   mayAnswer,
   mayAsk,
@@ -142,11 +141,7 @@ describe("the grant an RMA goes by", () => {
 });
 
 describe("what the customer gets", () => {
-  it("is without limit, words of ours, and the asking", () => {
-    expect(factsSeen({ remedy: "repair", limitCents: 1, managerWords: "x", messageId: "m" })).toEqual({
-      remedy: "repair",
-      messageId: "m",
-    });
+  it("is without the asking", () => {
     expect(moveSeen("grant or decline goodwill")).toBe("answer");
     expect(moveSeen("authorize what was granted")).toBe("authorize what was granted");
   });

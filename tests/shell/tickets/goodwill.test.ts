@@ -11,6 +11,7 @@ import {
   goodwillReport,
   goodwillRows,
   openGoodwills,
+  oursOfGoodwill,
 } from "@/lib/coverage/goodwill.queries";
 import type { Actor, Role } from "@/lib/ctx";
 import { defaultSite } from "@/lib/ledger/queries";
@@ -293,8 +294,8 @@ describe("authorizing what is not covered", () => {
       sql`select line, data from entry where ticket_id = ${c.ticketId} and kind = 'rma_authorized'`,
     );
     expect(entry!.line).toBe(`${rma.number} authorized: repair, by goodwill, C3`);
+    expect(entry!.data).not.toHaveProperty("limitCents");
     expect(entry!.data).toMatchObject({
-      limitCents: 42_000,
       goodwill: [{ goodwillId, ref: "C3", serial: c.serial }],
     });
     const [mail] = await rows<{ props: Record<string, unknown> }>(
@@ -378,10 +379,17 @@ describe("the customer", () => {
     );
     expect(JSON.stringify(seen)).not.toMatch(/limit|420|renewal|renew in spring|opened by others/i);
     const staff = (await ticketByNumber(as(s.agent), c.number))!;
-    expect(staff.entries.find((e) => e.kind === "goodwill_granted")!.data).toMatchObject({
+    const given = staff.entries.find((e) => e.kind === "goodwill_granted")!.data;
+    expect((await oursOfGoodwill(as(s.agent), c.ticketId)).get(String(given.goodwillId))).toEqual({
       limitCents: 42_000,
-      managerWords: "For the renewal.",
+      words: "For the renewal.",
     });
+    expect(await oursOfGoodwill(as(s.sam), c.ticketId)).toEqual(new Map());
+    // Nor by the database itself, under their own role.
+    const raw = await read(as(s.sam), (tx) =>
+      tx.execute(sql`select line, data from entry where ticket_id = ${c.ticketId}`),
+    );
+    expect(JSON.stringify(raw.rows)).not.toMatch(/limit|42000|renewal/i);
   });
 
   it("cannot reach the table, nor any door to it", async () => {

@@ -10,7 +10,7 @@ import { DueClock } from "@/components/tickets/due";
 import { Tag } from "@/components/ui/tag";
 import { may } from "@/lib/auth/rules";
 import { civilDayIn } from "@/lib/base/civil";
-import { goodwillOfTicket } from "@/lib/coverage/goodwill.queries";
+import { goodwillOfTicket, oursOfGoodwill } from "@/lib/coverage/goodwill.queries";
 import { lawNotice } from "@/lib/coverage/law.queries";
 import { coverFor, decisionInputs, decisionsOf, differencesOf } from "@/lib/coverage/queries";
 import { evidenceOf } from "@/lib/evidence/queries";
@@ -144,6 +144,7 @@ export default async function Ticket({
             evidence={evidence}
             decisions={decisions}
             differences={differences}
+            ours={await oursOfGoodwill(ctx, t.id)}
             rmas={rmas}
             zone={site.zone}
           />

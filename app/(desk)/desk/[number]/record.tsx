@@ -4,6 +4,7 @@ import { Tag } from "@/components/ui/tag";
 import { showBytes, showDay, showWait } from "@/lib/base/show";
 import { DecisionBody } from "@/components/coverage/decision";
 import type { Difference } from "@/lib/coverage/difference";
+import type { OursOfGoodwill } from "@/lib/coverage/goodwill.queries";
 import type { DecisionView } from "@/lib/coverage/queries";
 import { REMEDY_WORDS, type Remedy } from "@/lib/coverage/schema";
 import { TEST_OUTCOME_WORDS, type TestOutcome } from "@/lib/dock/schema";
@@ -20,6 +21,7 @@ type Props = {
   decisions: DecisionView[];
   /** What each decision says that the one before it, for the same unit, did not. */
   differences: ReadonlyMap<string, Difference>;
+  ours: OursOfGoodwill;
   rmas: RmaView[];
   zone: string;
 };
@@ -117,7 +119,7 @@ function Files({ files }: { files: EvidenceView[] }) {
   );
 }
 
-export function Record({ entries, messages, evidence, decisions, differences, rmas, zone }: Props) {
+export function Record({ entries, messages, evidence, decisions, differences, ours, rmas, zone }: Props) {
   const refs = new Set(entries.map((e) => e.ref));
   const str = (v: unknown) => (typeof v === "string" ? v : "");
   const body = (
@@ -197,20 +199,21 @@ export function Record({ entries, messages, evidence, decisions, differences, rm
       case "goodwill_asked":
       case "goodwill_granted":
       case "goodwill_declined": {
+        const kept = ours.get(str(e.data.goodwillId));
         const answered = entries.some((x) => x.kind !== e.kind && x.data.goodwillId === e.data.goodwillId);
         return {
           title: e.actorName,
           by: `${GOODWILL_WORDS[e.kind]} ${str(e.data.unitSerial)}${e.data.remedy ? `: ${remedyWords(e.data.remedy)}` : ""}`,
           right:
-            typeof e.data.limitCents === "number"
-              ? `up to ${showEuros(e.data.limitCents)}, for us only`
+            e.kind === "goodwill_granted" && typeof kept?.limitCents === "number"
+              ? `up to ${showEuros(kept.limitCents)}, for us only`
               : e.kind === "goodwill_granted"
                 ? undefined
                 : "for us only",
           children: (
             <>
               <p className="said">
-                <Cited text={str(e.data.reason) || str(e.data.managerWords)} refs={refs} />
+                <Cited text={str(e.data.reason) || (kept?.words ?? "")} refs={refs} />
               </p>
               {message ? (
                 <Folded words="The customer was told by mail">
@@ -231,7 +234,7 @@ export function Record({ entries, messages, evidence, decisions, differences, rm
         const rma = rmas.find((r) => r.id === e.data.rmaId);
         return {
           title: `${str(e.data.number)} authorized`,
-          by: <Cited text={`remedy: ${remedyWords(e.data.remedy)}${byGoodwill(e.data)}`} refs={refs} />,
+          by: <Cited text={`remedy: ${remedyWords(e.data.remedy)}${byGoodwill(e.data, ours)}`} refs={refs} />,
           right: e.actorName,
           children: rma ? (
             <dl className="rma">
@@ -320,10 +323,11 @@ const GOODWILL_WORDS = {
 const remedyWords = (v: unknown): string => REMEDY_WORDS[v as Remedy] ?? (typeof v === "string" ? v : "");
 
 /** ", by goodwill C4, up to 420.00 EUR", of an RMA that goes by a grant. */
-function byGoodwill({ goodwill, limitCents }: Record<string, unknown>): string {
-  if (!Array.isArray(goodwill) || typeof limitCents !== "number") return "";
-  const refs = (goodwill as { ref: string }[]).map((g) => g.ref);
-  return `, by goodwill ${refs.join(", ")}, up to ${showEuros(limitCents)}`;
+function byGoodwill({ goodwill }: Record<string, unknown>, ours: OursOfGoodwill): string {
+  if (!Array.isArray(goodwill)) return "";
+  const given = goodwill as { ref: string; goodwillId: string }[];
+  const cents = given.reduce((sum, g) => sum + (ours.get(g.goodwillId)?.limitCents ?? 0), 0);
+  return `, by goodwill ${given.map((g) => g.ref).join(", ")}, up to ${showEuros(cents)}`;
 }
 
 function sendState(message: MessageView | undefined): ReactNode {
