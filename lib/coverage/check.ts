@@ -28,6 +28,8 @@ export type ReadLines = {
   left: number;
   /** The column that the serials were read from, where a head names it. */
   column: string | null;
+  /** What was read, so that it can be asked again as text. */
+  text: string;
 };
 
 const GIVEN_LENGTH = 200;
@@ -253,7 +255,8 @@ export function readLines(input: string | Uint8Array): Result<ReadLines> {
   if (!decoded.ok) return decoded;
   if (notText(decoded.value))
     return refuse("unsupported", "This is not text. Save the sheet as CSV in UTF-8 and send that.");
-  const { list, column } = asked(decoded.value.replace(/^\uFEFF/, ""));
+  const text = decoded.value.replace(/^\uFEFF/, "");
+  const { list, column } = asked(text);
   if (list.length === 0)
     return refuse("invalid", "There is no serial in it. Paste them one on each line, or choose a file.");
   const seen = new Map<string, number>();
@@ -263,7 +266,7 @@ export function readLines(input: string | Uint8Array): Result<ReadLines> {
     if (key !== "" && sameAs === null) seen.set(key, line);
     return { line, given: shown(given), key, sameAs };
   });
-  return ok({ lines, left: Math.max(0, list.length - MAX_LINES), column });
+  return ok({ lines, left: Math.max(0, list.length - MAX_LINES), column, text });
 }
 
 /** As given, but an apostrophe that only keeps a table program from running it is not part of it. */
