@@ -51,7 +51,7 @@ describe("what a new decision says that the last did not", () => {
     [
       "terms",
       claim({ clauses: CLAUSES.map((c) => (c === DRIVES ? { ...c, period: "P60M" } : c)) }),
-      "Other terms apply to it",
+      "Clause 3.2: period 36 months (P36M), now 60 months (P60M)",
     ],
   ])("names %s", (_what, after, line) => {
     expect(of(claim(), after).facts).toEqual([line]);

@@ -11,7 +11,7 @@ const ctx = (): Ctx =>
     now: new Date("2026-11-12T10:00:00Z"),
     actor: {
       kind: "staff",
-      userId: "u",
+      userId: "00000000-0000-4000-8000-00000000000a",
       name: "Anneke Sow",
       email: "anneke@ostwick.example",
       roles: who.roles as ["manager"],

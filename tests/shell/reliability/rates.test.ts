@@ -15,7 +15,13 @@ const asOf = "2026-11-12";
 const staff = (...roles: Role[]): Ctx =>
   jobCtx("test", {
     now: new Date(`${asOf}T10:00:00Z`),
-    actor: { kind: "staff", userId: "u", name: "Anneke Sow", email: "anneke@ostwick.example", roles },
+    actor: {
+      kind: "staff",
+      userId: "00000000-0000-4000-8000-00000000000a",
+      name: "Anneke Sow",
+      email: "anneke@ostwick.example",
+      roles,
+    },
   });
 const manager = staff("manager");
 
