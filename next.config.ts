@@ -4,6 +4,8 @@ const config: NextConfig = {
   reactCompiler: true,
   poweredByHeader: false,
   agentRules: false,
+  // A list of serials may come as a file of 1 MiB, and its form with it.
+  experimental: { serverActions: { bodySizeLimit: "4mb" } },
   images: { unoptimized: true },
   // The types step checks every file; a build that only serves need not do it again.
   typescript: { ignoreBuildErrors: true },

@@ -120,7 +120,9 @@ export function CheckForm(p: Props) {
         setPicked(null);
       }}
       onChange={(e) => {
-        const boxes = e.currentTarget.querySelectorAll('input[name="units[]"]:checked, input[name="units[]"][type="hidden"]');
+        const boxes = e.currentTarget.querySelectorAll(
+          'input[name="units[]"]:checked, input[name="units[]"][type="hidden"]',
+        );
         setPicked(boxes.length);
       }}
     >

@@ -28,8 +28,8 @@ export function CheckStart({
     <section className="ck-start" aria-labelledby="ck-start">
       <h2 id="ck-start">Report a fault for the chosen units</h2>
       <p>
-        One report for all of them: one fault, one customer, fifty units at most. It counts from today, and the
-        decision for each follows at once.
+        One report for all of them: one fault, one customer, fifty units at most. It counts from today, and
+        the decision for each follows at once.
       </p>
       <ErrorSummary
         title="Nothing was reported yet"
@@ -37,7 +37,9 @@ export function CheckStart({
       />
       <p className="ck-count">
         <span aria-live="polite">
-          {count === 0 ? "None is chosen yet." : `${capital(countWord(count))} ${plural(count, "is", "are")} chosen.`}
+          {count === 0
+            ? "None is chosen yet."
+            : `${capital(countWord(count))} ${plural(count, "is", "are")} chosen.`}
         </span>{" "}
         <button type="submit" name="choose" value="all" className="linklike">
           Choose {page.startable > 50 ? "the first fifty" : "all"} that can be
@@ -116,7 +118,11 @@ export function CheckStart({
         <Choice
           name="data"
           value="cleared"
-          title={forCustomer ? "The customer clears it, or nothing is on them" : "I clear it, or nothing is on them"}
+          title={
+            forCustomer
+              ? "The customer clears it, or nothing is on them"
+              : "I clear it, or nothing is on them"
+          }
           defaultChecked={typed.data === "cleared"}
         />
         <Choice

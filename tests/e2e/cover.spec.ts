@@ -127,3 +127,70 @@ test.describe("terms and decisions", () => {
     await expect(page.locator(".entry")).toHaveCount(entries);
   });
 });
+
+test.describe("many serials at once", () => {
+  test.describe.configure({ timeout: 180_000 });
+
+  test("each line is answered, the bad ones hold up nothing, the CSV has all, and a customer reports several together", async ({
+    page,
+  }) => {
+    await enterAs(page, "ifeoma@bramblegate.example");
+    await page.goto("/equipment");
+    await page.getByRole("link", { name: "Check many serials at once" }).click();
+    const own = ["OW4420-7K3QX", "ow4420 7k30x"];
+    await page
+      .getByLabel("Serials")
+      .fill(["serial number", ...own, "=HYPERLINK(1)", "hello world", "OW4420-7K3QX"].join("\n"));
+    await page.getByRole("button", { name: "Check them" }).click();
+    const table = page.getByRole("table", { name: "The lines checked" });
+    await expect(table.getByRole("row")).toHaveCount(1 + 5);
+    await expect(table.getByText("named in line 2 already")).toBeVisible();
+    await expect(page.getByRole("heading", { level: 2, name: /of five (is|are) covered on/ })).toBeVisible();
+
+    // The same form as a file: every line once, formulas harmless.
+    const coming = page.waitForEvent("download");
+    await page.getByRole("button", { name: "Download as CSV" }).click();
+    const file = await coming;
+    expect(file.suggestedFilename()).toMatch(/^cover-\d{4}-\d\d-\d\d\.csv$/);
+    const csv = await (await import("node:fs/promises")).readFile((await file.path())!, "utf8");
+    expect(csv.split("\r\n").filter(Boolean)).toHaveLength(1 + 5);
+    expect(csv).toContain("'=HYPERLINK(1)");
+
+    // A filter is a part of the list; what was chosen stays chosen behind it.
+    const boxes = table.getByRole("checkbox");
+    const can = await boxes.count();
+    expect(can, "units of the demo that can be reported").toBeGreaterThan(0);
+    await boxes.first().check();
+    await page.getByRole("button", { name: /not found$/ }).click();
+    await expect(table.getByRole("checkbox")).toHaveCount(0);
+    await page.getByRole("button", { name: /^all / }).click();
+    await expect(table.getByRole("checkbox").first()).toBeChecked();
+
+    await page.getByRole("button", { name: "Report the fault" }).click();
+    await expect(page.getByRole("heading", { name: "Nothing was reported yet" })).toBeVisible();
+    await page.getByLabel("What do they do?").selectOption("restarts");
+    await page.getByLabel("In your words").fill("They restart by themselves about once a day.");
+    await page.getByLabel(/^One is swollen/).check();
+    await page.getByLabel(/^I clear it/).check();
+    await page.getByRole("button", { name: "Report the fault" }).click();
+    await expect(page.getByText(/must not be shipped/).first()).toBeVisible();
+    await expect(page.getByLabel("In your words")).toHaveValue(
+      "They restart by themselves about once a day.",
+    );
+    await page.getByLabel(/^Batteries inside/).check();
+    await page.getByRole("button", { name: "Report the fault" }).click();
+    await page.waitForURL(/\/cases\/\d+/);
+    await expect(page.getByText("They restart by themselves about once a day.").first()).toBeVisible();
+  });
+
+  test("works without JavaScript", async ({ browser, baseURL }) => {
+    const context = await browser.newContext({ baseURL, javaScriptEnabled: false });
+    const page = await context.newPage();
+    await enterAs(page, "ifeoma@bramblegate.example");
+    await page.goto("/equipment/check");
+    await page.getByLabel("Serials").fill("OW4420-7K3QX\nnot one");
+    await page.getByRole("button", { name: "Check them" }).click();
+    await expect(page.getByRole("table", { name: "The lines checked" }).getByRole("row")).toHaveCount(3);
+    await context.close();
+  });
+});

@@ -48,6 +48,7 @@ export default async function Ledger({
         <input id="ledger-q" name="q" className="in m" defaultValue={q} autoComplete="off" />
         <Button kind="line">Find</Button>
         {q ? <Link href="/ledger">show all</Link> : null}
+        <Link href="/ledger/check">Check many serials at once</Link>
       </form>
       {rows.length === 0 ? (
         <Empty title={q ? `Nothing in the ledger answers to ${q}.` : "The ledger is empty."}>

@@ -1,3 +1,4 @@
+import Link from "next/link";
 import type { Metadata } from "next";
 import { requireCustomer } from "@/app/_edge/ctx";
 import { PortalCoverBar } from "@/components/coverage/portal-bar";
@@ -54,6 +55,9 @@ export default async function Equipment({
             Find
           </Button>
         </div>
+        <p className="hint">
+          Have a list? <Link href="/equipment/check">Check many serials at once</Link>.
+        </p>
       </form>
       {rows.length === 0 ? (
         <Empty title={q ? `Nothing of yours begins with ${q}.` : "No equipment yet."}>
