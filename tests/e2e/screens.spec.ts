@@ -64,6 +64,13 @@ test.describe("every screen can be used by everybody", () => {
     await judge(page, "ticket");
     await page.getByRole("button", { name: "Decide again" }).click();
     await judge(page, "ticket-decide");
+    await page.getByRole("link", { name: "What if a fact were other?" }).last().click();
+    await page.getByLabel("Claim day").fill("2199-01-01");
+    await page.getByRole("button", { name: "Try these facts" }).click();
+    await expect(page.getByRole("region", { name: "With these facts" })).toBeVisible();
+    await judge(page, "what-if");
+    await page.goto("/goodwill");
+    await judge(page, "goodwill-own");
     await page.goto("/desk");
     const proposed = await hrefs(page, '.q-row:has-text("unit proposed") a.fault');
     await page.goto(proposed[0]!);
@@ -81,10 +88,34 @@ test.describe("every screen can be used by everybody", () => {
       ["/ledger/import", "import"],
       ["/ledger/import?error=none", "import-error"],
       ["/terms", "terms"],
+      ["/terms/notices", "notices"],
+      ["/terms/calendar", "calendar"],
+      ["/terms/new", "terms-new"],
+      ["/ledger/check", "check"],
+      ["/goodwill?state=declined&month=2001-01", "goodwill-none"],
     ] as const) {
       await page.goto(path);
       await judge(page, name);
     }
+    await page.goto("/terms/calendar");
+    await page.getByLabel("Holidays, one a line").fill("2026-12-25, Christmas Day\nthe day after");
+    await page.getByRole("button", { name: "Set these holidays" }).click();
+    await expect(page.getByRole("heading", { name: "No holiday was changed" })).toBeVisible();
+    await expect(page.getByLabel("Holidays, one a line")).toHaveValue(/the day after/);
+    await judge(page, "calendar-error");
+    await page.goto("/terms/notices");
+    await page.getByLabel("Title").fill("Whatever the terms say");
+    await page
+      .getByLabel("In two to four plain sentences")
+      .fill("Beyond these terms you have no rights at all.");
+    await page.getByRole("button", { name: "Keep this notice" }).click();
+    await expect(page.getByText(/takes away what the law may give/).first()).toBeVisible();
+    await judge(page, "notices-error");
+    await page.goto("/ledger/check");
+    await page.getByLabel("Serials").fill("OW4420-7K3QX\nOW4420-7K3OX\nhello world\nOW4420-7K3QX");
+    await page.getByRole("button", { name: "Check them" }).click();
+    await expect(page.getByRole("table", { name: "The lines checked" })).toBeVisible();
+    await judge(page, "check-done");
     await page.goto("/ledger/import");
     await page.goto((await hrefs(page, '.plist a[href^="/ledger/import/"]'))[0]!);
     await judge(page, "import-done");
@@ -102,6 +133,22 @@ test.describe("every screen can be used by everybody", () => {
     await page.goto("/terms");
     await page.goto((await hrefs(page, ".termslist a"))[0]!);
     await judge(page, "terms-version");
+    await page.goto("/terms");
+    await page
+      .locator("section", { has: page.getByRole("heading", { name: "Standard terms" }) })
+      .getByRole("button", { name: "Draft the next issue" })
+      .click();
+    await expect(page.getByRole("heading", { level: 1, name: /draft of issue/ })).toBeVisible();
+    await judge(page, "terms-draft");
+    await page.getByRole("link", { name: "Change clause 3.3" }).click();
+    await page.getByLabel("Period", { exact: true }).fill("P1.5M");
+    await page.getByRole("button", { name: /Keep this clause/ }).click();
+    await expect(page.locator("#f-period-error")).toBeVisible();
+    await judge(page, "terms-clause-error");
+    await page.goto(page.url().replace(/[?#].*$/, ""));
+    await page.getByText("Throw this draft away").click();
+    await page.getByRole("button", { name: "Throw it away" }).click();
+    await page.waitForURL(/\/terms$/);
   });
 
   test("at dock and bench", async ({ page }) => {
@@ -146,6 +193,8 @@ test.describe("every screen can be used by everybody", () => {
 
   test("among the failure rates", async ({ page }) => {
     await enterAs(page, "anneke@ostwick.example");
+    await page.goto("/goodwill");
+    await judge(page, "goodwill");
     await page.goto("/rates");
     await judge(page, "rates");
     await page.goto("/rates?by=model");
@@ -159,10 +208,16 @@ test.describe("every screen can be used by everybody", () => {
       ["/equipment?q=zzzz", "equipment-empty"],
       ["/equipment/OW4420-7K3QX", "equipment-unit"],
       ["/cases", "cases"],
+      ["/equipment/check", "portal-check"],
     ] as const) {
       await page.goto(path);
       await judge(page, name);
     }
+    await page.goto("/equipment/check");
+    await page.getByLabel("Serials").fill("OW4420-7K3QX\nOW2210-NOPE1");
+    await page.getByRole("button", { name: "Check them" }).click();
+    await expect(page.getByRole("table", { name: "The lines checked" })).toBeVisible();
+    await judge(page, "portal-check-done");
     await page.goto("/cases");
     const cases = await hrefs(page, 'a[href^="/cases/"]');
     await page.goto(cases[0]!);
