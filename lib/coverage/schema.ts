@@ -65,6 +65,13 @@ export const FREIGHT_WORDS: Record<FreightRule, string> = {
   customer_both: "the customer pays both ways",
 };
 
+/** As the customer is told it. */
+export const FREIGHT_TOLD: Record<FreightRule, string> = {
+  seller_both: "We pay the freight both ways.",
+  customer_in: "You pay the way to us, we pay the way back.",
+  customer_both: "You pay the freight both ways.",
+};
+
 /** What a clause may leave out, once its evidence shows it. Common practice, no source. */
 export const EXCLUSIONS = [
   "physical_damage",

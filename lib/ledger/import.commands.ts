@@ -336,6 +336,8 @@ async function addGroups(ctx: TxCtx, groups: ShipmentRow[][], importId: string) 
       lineKey: lineKeyOf(r),
       shippedOn: r.shippedOn,
       deliveredOn: r.deliveredOn || null,
+      invoicedOn: r.invoicedOn || null,
+      installedOn: r.installedOn || null,
       termsVersionId: version.id,
       condition: r.condition,
       buyerKind: r.buyerKind,

@@ -32,6 +32,8 @@ export const COLUMNS = [
   "slot",
   "ship date",
   "delivery date",
+  "invoice date",
+  "setup date",
   "terms",
   "site note",
   "lot",
@@ -76,6 +78,9 @@ export type ShipmentRow = {
   slot: string;
   shippedOn: string;
   deliveredOn: string;
+  invoicedOn: string;
+  /** Set up at the customer's, where terms count from there. */
+  installedOn: string;
   terms: string;
   siteNote: string;
   lot: string;
@@ -188,12 +193,14 @@ export function readShipments(bytes: Uint8Array): Result<ReadShipments> {
     const country = cell("country").toUpperCase();
     if (country !== "" && !/^[A-Z]{2}$/.test(country))
       say("country", "Give the country as two letters, such as GB.");
-    for (const c of ["ship date", "delivery date"] as const) {
+    for (const c of ["ship date", "delivery date", "invoice date", "setup date"] as const) {
       if (cell(c) !== "" && !isDay(cell(c)))
         say(c, `"${cell(c)}" is not a day. Write it as year-month-day, such as 2026-03-04.`);
     }
     if (isDay(cell("ship date")) && isDay(cell("delivery date")) && cell("delivery date") < cell("ship date"))
       say("delivery date", "It was delivered before it was shipped; one of the two days is wrong.");
+    if (isDay(cell("ship date")) && isDay(cell("setup date")) && cell("setup date") < cell("ship date"))
+      say("setup date", "It was set up before it was shipped; one of the two days is wrong.");
     const email = cell("contact e-mail").toLowerCase();
     if (email !== "" && !/^[^@\s]+@[^@\s]+\.[^@\s]+$/.test(email))
       say("contact e-mail", `"${cell("contact e-mail")}" is not an e-mail address.`);
@@ -229,6 +236,8 @@ export function readShipments(bytes: Uint8Array): Result<ReadShipments> {
       slot: cell("slot"),
       shippedOn: cell("ship date"),
       deliveredOn: cell("delivery date"),
+      invoicedOn: cell("invoice date"),
+      installedOn: cell("setup date"),
       terms: cell("terms").toUpperCase(),
       siteNote: cell("site note"),
       lot: cell("lot"),

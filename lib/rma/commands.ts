@@ -8,7 +8,7 @@ import { feeNotices, rmaLines, rmas } from "@/db/schema/rma";
 import { tickets, ticketUnits } from "@/db/schema/tickets";
 import { audit } from "@/lib/audit/commands";
 import { permit } from "@/lib/auth/rules";
-import { civilDayIn } from "@/lib/base/civil";
+import { addDays, civilDayIn, rollToWorkday } from "@/lib/base/civil";
 import { parse } from "@/lib/base/parse";
 import { ok, refuse, type Result } from "@/lib/base/result";
 import { showDay } from "@/lib/base/show";
@@ -161,6 +161,12 @@ export async function authorizeRma(
       const rmaId = ctx.newId();
       const today = civilDayIn(ctx.now, site.zone);
       const expiresOn = sendBy(today, site);
+      // The clause says how long the old part may take; of several lines the shortest counts.
+      const backWithin = lines.flatMap(
+        (l) => (newest(l.unitId)!.answer as Decision).handling?.dueBackDays ?? [],
+      );
+      const dueBackOn =
+        backWithin.length > 0 ? rollToWorkday(addDays(today, Math.min(...backWithin)), site) : expiresOn;
       await ctx.tx.insert(rmas).values({
         id: rmaId,
         number,
@@ -172,7 +178,7 @@ export async function authorizeRma(
         authorizedAt: ctx.now,
         authorizedByName: ctx.actor.kind === "customer" ? "Mendbay, by the decision" : actorName(ctx.actor),
         expiresOn,
-        dueBackOn: v.remedy === "advance_replacement" ? expiresOn : null,
+        dueBackOn: v.remedy === "advance_replacement" ? dueBackOn : null,
         shipTo: v.shipTo,
         battery: v.battery ?? null,
         createdAt: ctx.now,

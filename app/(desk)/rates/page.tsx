@@ -4,7 +4,7 @@ import { notFound } from "next/navigation";
 import { requireStaff } from "@/app/_edge/ctx";
 import { grouped, years } from "@/components/reliability/axes";
 import { Empty } from "@/components/ui/empty";
-import { plural, showDay } from "@/lib/base/show";
+import { countWord, plural, showDay } from "@/lib/base/show";
 import { openGoodwills } from "@/lib/coverage/goodwill.queries";
 import { defaultSite } from "@/lib/ledger/queries";
 import { rates, ratesChoices, survival, triangle } from "@/lib/reliability/queries";
@@ -52,12 +52,11 @@ export default async function Rates({
         </div>
       )}
       <p>
-        <Link href="/goodwill">
-          Goodwill
-          {goodwill && goodwill.open > 0
-            ? `: ${goodwill.open} asked and not answered yet`
-            : ", asked and granted"}
-        </Link>
+        What was granted outside the terms stands under <Link href="/goodwill">goodwill</Link>
+        {goodwill && goodwill.open > 0
+          ? `; ${countWord(goodwill.open)} ${plural(goodwill.open, "ask waits", "asks wait")} for an answer`
+          : ""}
+        .
       </p>
       <Method zone={zone} />
     </main>

@@ -91,11 +91,18 @@ describe("a row that is wrong", () => {
     ],
     ["a day another way round", { ...S, "ship date": "05/01/2026" }, "ship date", /is not a day/],
     [
+      "set up before it was shipped",
+      { ...S, "setup date": "2026-01-04" },
+      "setup date",
+      /It was set up before/,
+    ],
+    [
       "delivered before it was shipped",
       { ...S, "delivery date": "2026-01-04" },
       "delivery date",
       /before it was shipped/,
     ],
+    ["an invoice day that is none", { ...S, "invoice date": "soon" }, "invoice date", /"soon" is not a day/],
     ["a formula", { ...S, "site note": "=HYPERLINK(1)" }, "site note", /"=HYPERLINK\(1\)" is a formula/],
     ["a formula by plus", { ...S, serial: "+1+1+1+1" }, "serial", /is a formula/],
     ["a formula by at", { ...S, "contact name": "@SUM(A1)" }, "contact name", /is a formula/],

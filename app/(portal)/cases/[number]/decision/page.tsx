@@ -10,7 +10,7 @@ import { civilDayIn } from "@/lib/base/civil";
 import { capital, showDay } from "@/lib/base/show";
 import { lawBeside } from "@/lib/coverage/law.queries";
 import { decisionsOf } from "@/lib/coverage/queries";
-import { REMEDY_WORDS } from "@/lib/coverage/schema";
+import { FREIGHT_TOLD, REMEDY_WORDS } from "@/lib/coverage/schema";
 import { env } from "@/lib/env";
 import { rmasOfTicket } from "@/lib/rma/queries";
 import { ticketByNumber } from "@/lib/tickets/queries";
@@ -28,6 +28,8 @@ export default async function DecisionLetter({ params }: { params: Promise<{ num
   const d = newest.answer;
   const unit = t.units.find((u) => u.id === newest.ticketUnitId);
   const covers = d.outcome === "covered" || d.outcome === "covered_doa";
+  // Decisions of an earlier engine say nothing of freight.
+  const freight = d.handling?.freight ?? null;
   const cover = d.windows.find((w) => w.kind === "cover");
   const doa = d.windows.find((w) => w.kind === "doa");
   const rma = rmas[0];
@@ -48,7 +50,13 @@ export default async function DecisionLetter({ params }: { params: Promise<{ num
         <p>
           You may choose how we make it good{d.remedies.length > 1 ? "" : `: ${REMEDY_WORDS[d.remedies[0]!]}`}
           . It costs you nothing
-          {d.fees.length > 0 ? ", with one exception told below" : ""}.
+          {freight && freight !== "seller_both" ? " but the freight told below" : ""}
+          {d.fees.length > 0
+            ? d.fees.length === 1
+              ? ", with one exception told below"
+              : ", with the exceptions told below"
+            : ""}
+          .
         </p>
       ) : d.outcome === "needs_person" ? (
         <p>
@@ -75,6 +83,11 @@ export default async function DecisionLetter({ params }: { params: Promise<{ num
       {d.wouldChange.length > 0 ? (
         <p>
           <b>What would change this.</b> {d.wouldChange.map((w) => w.customer).join(" ")}
+        </p>
+      ) : null}
+      {covers && freight ? (
+        <p>
+          <b>Freight.</b> {FREIGHT_TOLD[freight]}
         </p>
       ) : null}
       {d.fees.map((f) => (

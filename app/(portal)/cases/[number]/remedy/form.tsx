@@ -5,6 +5,7 @@ import { Button } from "@/components/ui/button";
 import { ErrorSummary } from "@/components/ui/error-summary";
 import { Choice, ChoiceGroup } from "@/components/ui/field";
 import { CautionStrip } from "@/components/ui/caution-strip";
+import { FREIGHT_TOLD, type FreightRule } from "@/lib/coverage/schema";
 import { chooseRemedy } from "../../../actions";
 
 const WORDS: Record<string, [title: string, detail: string]> = {
@@ -26,6 +27,7 @@ export function RemedyForm(p: {
   ticketUnitId: string;
   remedies: string[];
   fees: string[];
+  freight: FreightRule | null;
   battery: string;
 }) {
   const [state, submit, busy] = useActionState(chooseRemedy, UNSENT as FormState<never>);
@@ -64,7 +66,12 @@ export function RemedyForm(p: {
         />
       ) : null}
       <h2>What it costs</h2>
-      {p.fees.length === 0 ? <p>Nothing.</p> : p.fees.map((f) => <p key={f}>Nothing, unless: {f}</p>)}
+      {p.freight ? <p>{FREIGHT_TOLD[p.freight]}</p> : null}
+      {p.fees.length === 0 ? (
+        <p>Nothing{p.freight && p.freight !== "seller_both" ? " else" : ""}.</p>
+      ) : (
+        p.fees.map((f) => <p key={f}>Nothing, unless: {f}</p>)
+      )}
       <p className="pact">
         <Button
           type="submit"

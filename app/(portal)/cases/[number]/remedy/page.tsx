@@ -32,6 +32,7 @@ export default async function RemedyPage({ params }: { params: Promise<{ number:
         ticketId={t.id}
         ticketUnitId={unit.id}
         remedies={newest.answer.remedies}
+        freight={newest.answer.handling?.freight ?? null}
         fees={newest.answer.fees.map((f) => `${f.words} ${(f.cents / 100).toFixed(2)} EUR.`)}
         battery={unit.answers.battery ?? "inside"}
       />
