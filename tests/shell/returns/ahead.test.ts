@@ -1,12 +1,15 @@
 import { sql } from "drizzle-orm";
 import { beforeAll, describe, expect, it } from "vitest";
 import { must } from "@/lib/base/result";
+import { publishTerms } from "@/lib/coverage/commands";
 import { closeBench, sendBack, settleByMoney, shipReplacement, startBench } from "@/lib/dock/bench.commands";
 import { receiveLine } from "@/lib/dock/commands";
 import { benchQueue } from "@/lib/dock/queries";
 import { authorizeRma } from "@/lib/rma/commands";
 import { authorized, confirmed, decided, photo, stateOf } from "../../factories/returns";
-import { as, job, rows, seller, type Seller } from "../../factories/seller";
+import { as, job, rows, sell, seller, type Seller } from "../../factories/seller";
+import { part, system } from "../../factories/shipments";
+import { BUSINESS_TERMS } from "../../factories/terms";
 import { freshDb } from "../db";
 
 await freshDb();
@@ -19,6 +22,24 @@ const waits = async (ticketId: string) =>
   (await rows<{ on: string }>(sql`select waiting_on::text as on from ticket where id = ${ticketId}`))[0]!.on;
 
 describe("an advance replacement", () => {
+  it("wants the old part back by the day its clause says, rolled to a working day of our site", async () => {
+    must(
+      await publishTerms(job(), {
+        ...BUSINESS_TERMS,
+        code: "OSW-TEN",
+        clauses: BUSINESS_TERMS.clauses.map((c) => (c.number === "3.2" ? { ...c, dueBackDays: 10 } : c)),
+      }),
+    );
+    const own = system("OW2210-TEN01", { order: "ORD-7701", terms: "OSW-TEN" });
+    await sell([own, { ...part("VS19-TEN01", own, "Drive bay 1"), terms: "OSW-TEN" }]);
+    const rma = await authorized(s, "VS19-TEN01", "advance_replacement");
+    // Authorized on Wednesday 3 June 2026: ten days end on a Saturday.
+    const [row] = await rows<{ due: string; by: string }>(
+      sql`select due_back_on::text as due, expires_on::text as by from rma where id = ${rma.rmaId}`,
+    );
+    expect(row).toEqual({ due: "2026-06-15", by: "2026-06-17" });
+  });
+
   it("goes out before anything has come back, and the RMA is settled when the old part has been judged", async () => {
     const rma = await authorized(s, "VS19-PIN0A", "advance_replacement");
     expect(await waits(rma.ticketId)).toBe("dock");
