@@ -3,6 +3,7 @@ import { headers } from "next/headers";
 import { redirect } from "next/navigation";
 import type { CheckPage } from "@/components/coverage/check-form";
 import { checkPage } from "@/components/coverage/check-page";
+import type { CheckShown } from "@/components/coverage/check-panel";
 import { refuse, type Result } from "@/lib/base/result";
 import {
   CHECK_FILTERS,
@@ -19,14 +20,6 @@ import { checkDay, checkSerials } from "@/lib/coverage/check.queries";
 import type { Ctx } from "@/lib/ctx";
 import { startFromCheck } from "@/lib/tickets/check.commands";
 import { currentCtx } from "./ctx";
-
-/** What a check shows after it was sent: its answer, or why not, with what was typed. */
-export type CheckState = {
-  page: CheckPage | null;
-  message: string | null;
-  fields: Record<string, string[]>;
-  typed: { text: string; day: string };
-};
 
 const text = (form: FormData, name: string): string => {
   const value = form.get(name);
@@ -63,10 +56,10 @@ const crossSite = async () => (await headers()).get("sec-fetch-site") === "cross
 export async function answerCheck(
   form: FormData,
   who: { staff: boolean; reports: boolean },
-): Promise<CheckState> {
+): Promise<CheckShown> {
   const ctx = await currentCtx();
   const typed = { text: text(form, "text"), day: text(form, "day") };
-  const no = (message: string, fields: Record<string, string[]> = {}): CheckState => ({
+  const no = (message: string, fields: Record<string, string[]> = {}): CheckShown => ({
     page: null,
     message,
     fields,

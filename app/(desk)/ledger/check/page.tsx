@@ -1,9 +1,10 @@
 import type { Metadata } from "next";
 import { requireStaff } from "@/app/_edge/ctx";
+import { CheckPanel } from "@/components/coverage/check-panel";
 import { may } from "@/lib/auth/rules";
 import { civilDayIn } from "@/lib/base/civil";
 import { env } from "@/lib/env";
-import { LedgerCheck } from "./form";
+import { check } from "./actions";
 
 export const metadata: Metadata = { title: "Check many serials" };
 
@@ -20,10 +21,14 @@ export default async function Check() {
           </p>
         </div>
       </div>
-      <LedgerCheck
+      <CheckPanel
+        check={check}
         today={civilDayIn(ctx.now, env().MENDBAY_ZONE)}
         formId={ctx.newId()}
-        reports={may(ctx, "ticket.open")}
+        csv="/ledger/check/csv"
+        back={{ href: "/ledger", words: "Back to the ledger" }}
+        starts={may(ctx, "ticket.open") ? "for_customer" : null}
+        customers
       />
     </main>
   );

@@ -1,8 +1,9 @@
 "use server";
-import { answerCheck, type CheckState } from "@/app/_edge/check";
+import { answerCheck } from "@/app/_edge/check";
 import { requireCustomer } from "@/app/_edge/ctx";
+import type { CheckShown } from "@/components/coverage/check-panel";
 
-export async function check(_state: CheckState, form: FormData): Promise<CheckState> {
+export async function check(_state: CheckShown, form: FormData): Promise<CheckShown> {
   await requireCustomer();
   return answerCheck(form, { staff: false, reports: true });
 }
