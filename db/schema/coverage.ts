@@ -151,6 +151,10 @@ export const coverWindows = pgTable(
     index("window_of_sale").on(t.saleLineId),
     index("window_of_unit").on(t.unitId),
     index("window_of_installation").on(t.installationId),
+    // Limits that a changed holiday may move.
+    index("window_doa_end")
+      .on(t.lastOn, t.saleLineId)
+      .where(sql`kind = 'doa'`),
     check("window_days", sql`${t.lastOn} >= ${t.firstOn}`),
   ],
 );

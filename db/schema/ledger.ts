@@ -217,6 +217,7 @@ export const saleLines = pgTable(
     index("sale_of_unit").on(t.unitId, t.shippedOn),
     index("sale_of_account").on(t.accountId, t.shippedOn, t.id),
     index("sale_of_order").on(t.orderNumber),
+    index("sale_under_terms").on(t.termsVersionId),
     uniqueIndex("sale_line_one_open")
       .on(t.unitId)
       .where(sql`ended_on is null`),
@@ -262,6 +263,9 @@ export const installations = pgTable(
     index("installation_of_parent").on(t.parentUnitId),
     index("installation_of_unit").on(t.unitId),
     index("installation_of_sale").on(t.saleLineId),
+    index("installation_covered_elsewhere")
+      .on(t.coverSaleLineId)
+      .where(sql`cover_sale_line_id is not null`),
     check("installation_days", sql`${t.toOn} is null or ${t.toOn} >= ${t.fromOn}`),
     check("installation_not_self", sql`${t.parentUnitId} <> ${t.unitId}`),
   ],
