@@ -21,7 +21,9 @@ function handlingWords({ handling }: Decision): string {
   if (!handling) return "";
   return [
     handling.dueBackDays === null ? null : `old part back within ${handling.dueBackDays} days`,
-    handling.holdCents === null ? null : `${(handling.holdCents / 100).toFixed(2)} EUR may be held until then`,
+    handling.holdCents === null
+      ? null
+      : `${(handling.holdCents / 100).toFixed(2)} EUR may be held until then`,
     handling.freight === null ? null : FREIGHT_WORDS[handling.freight],
     handling.responseHours === null ? null : `our answer within ${handling.responseHours} working hours`,
   ]
