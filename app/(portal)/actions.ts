@@ -95,7 +95,7 @@ export const chooseRemedy = action(
       return refuse("invalid", "Say first whether a battery is damaged.");
     return authorizeRma(ctx, {
       ticketId: text(input.ticketId),
-      lines: [{ ticketUnitId: text(input.ticketUnitId) }],
+      lines: (Array.isArray(input.units) ? input.units : []).map((u) => ({ ticketUnitId: text(u) })),
       remedy: text(input.remedy) as never,
       battery: { present: battery !== "none", damaged: battery === "damaged" },
       shipTo: text(input.shipTo)

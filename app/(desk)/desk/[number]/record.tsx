@@ -153,7 +153,7 @@ export function Record({ entries, messages, evidence, decisions, differences, ou
       case "fault_reported":
         return {
           title: e.actorName,
-          by: "reported it in the portal",
+          by: e.actorKind === "customer" ? "reported it in the portal" : "wrote down a report",
           right: "claim date",
           children: (
             <>
@@ -340,6 +340,8 @@ function sendState(message: MessageView | undefined): ReactNode {
 
 function Answers({ answers }: { answers: Record<string, string> }) {
   const words: [string, string | undefined][] = [
+    ["Units", answers.units],
+    ["Left out", answers.leftOut],
     ["Since", answers.since],
     [
       "Battery",

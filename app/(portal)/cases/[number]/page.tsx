@@ -2,13 +2,15 @@ import type { Metadata } from "next";
 import { notFound } from "next/navigation";
 import { requireCustomer } from "@/app/_edge/ctx";
 import { Tag } from "@/components/ui/tag";
-import { showInstant } from "@/lib/base/show";
+import { countWord, showInstant } from "@/lib/base/show";
 import { env } from "@/lib/env";
 import { evidenceOf } from "@/lib/evidence/queries";
+import { decisionsOf } from "@/lib/coverage/queries";
 import { rmasOfTicket } from "@/lib/rma/queries";
 import { ticketByNumber } from "@/lib/tickets/queries";
 import { moveWords } from "../words";
 import { AnswerForm, MoreEvidence } from "./forms";
+import { standingOf } from "./standing";
 
 export const metadata: Metadata = { title: "Your case" };
 
@@ -24,6 +26,7 @@ export default async function Case({
   if (!t) notFound();
   const sent = (await searchParams).sent === "1";
   const [evidence, rmas] = [await evidenceOf(ctx, t.id), await rmasOfTicket(ctx, t.id)];
+  const open = standingOf(t.units, await decisionsOf(ctx, t.id), rmas).filter((s) => s.open).length;
   const decided = t.entries.findLast((e) => e.kind === "decision");
   return (
     <>
@@ -48,6 +51,13 @@ export default async function Case({
         {decided ? (
           <li>
             <a href={`/cases/${t.number}/decision`}>Read the coverage decision</a>
+          </li>
+        ) : null}
+        {open > 0 && rmas.length > 0 ? (
+          <li>
+            <a href={`/cases/${t.number}/remedy`}>
+              Choose how we make the {open === 1 ? "other unit" : `other ${countWord(open)} units`} good
+            </a>
           </li>
         ) : null}
         {rmas.map((r) => (

@@ -10,19 +10,29 @@ import { civilDayIn } from "@/lib/base/civil";
 import { capital, showDay } from "@/lib/base/show";
 import { lawBeside } from "@/lib/coverage/law.queries";
 import { decisionsOf } from "@/lib/coverage/queries";
-import { FREIGHT_TOLD, REMEDY_WORDS } from "@/lib/coverage/schema";
+import { FREIGHT_TOLD, OUTCOME_WORDS, REMEDY_WORDS } from "@/lib/coverage/schema";
 import { env } from "@/lib/env";
 import { rmasOfTicket } from "@/lib/rma/queries";
 import { ticketByNumber } from "@/lib/tickets/queries";
+import { standingOf } from "../standing";
 
 export const metadata: Metadata = { title: "Your cover" };
 
-export default async function DecisionLetter({ params }: { params: Promise<{ number: string }> }) {
+export default async function DecisionLetter({
+  params,
+  searchParams,
+}: {
+  params: Promise<{ number: string }>;
+  searchParams: Promise<{ unit?: string }>;
+}) {
   const ctx = await requireCustomer();
   const t = await ticketByNumber(ctx, Number((await params).number));
   if (!t) notFound();
   const [decisions, rmas] = [await decisionsOf(ctx, t.id), await rmasOfTicket(ctx, t.id)];
-  const newest = decisions.at(-1);
+  const all = standingOf(t.units, decisions, rmas);
+  const asked = (await searchParams).unit;
+  // What a person must decide, or is not covered, is read first where a case has several units.
+  const newest = all.find((s) => s.unit.id === asked)?.decision ?? decisions.at(-1);
   if (!newest) notFound();
   const law = await lawBeside(ctx, newest.id);
   const d = newest.answer;
@@ -32,13 +42,34 @@ export default async function DecisionLetter({ params }: { params: Promise<{ num
   const freight = d.handling?.freight ?? null;
   const cover = d.windows.find((w) => w.kind === "cover");
   const doa = d.windows.find((w) => w.kind === "doa");
-  const rma = rmas[0];
+  const open = all.filter((s) => s.open);
+  const rma =
+    all.find((s) => s.decision.id === newest.id)?.rmaNumber ?? (open.length === 0 ? rmas[0]?.number : null);
   return (
     <>
       <p>
         {ctx.actor.name}
         {t.accountName && t.accountName !== ctx.actor.name ? `, ${t.accountName}` : ""}
       </p>
+      {all.length > 1 ? (
+        <nav aria-label="Units of this case">
+          <ul className="plist">
+            {all.map((s) => (
+              <li key={s.unit.id}>
+                <a
+                  href={`/cases/${t.number}/decision?unit=${s.unit.id}`}
+                  aria-current={s.decision.id === newest.id ? "page" : undefined}
+                  className="m"
+                >
+                  {s.unit.serial}
+                </a>
+                , {OUTCOME_WORDS[s.decision.answer.outcome]}
+                {s.rmaNumber ? `, on ${s.rmaNumber}` : ""}
+              </li>
+            ))}
+          </ul>
+        </nav>
+      ) : null}
       {unit ? (
         <p className="prow">
           <Tag serial={unit.serial} />
@@ -145,8 +176,8 @@ export default async function DecisionLetter({ params }: { params: Promise<{ num
       )}
       <p className="pact">
         {rma ? (
-          <ButtonLink href={`/rma/${rma.number}`}>Follow {rma.number}</ButtonLink>
-        ) : covers ? (
+          <ButtonLink href={`/rma/${rma}`}>Follow {rma}</ButtonLink>
+        ) : covers || open.length > 0 ? (
           <ButtonLink href={`/cases/${t.number}/remedy`}>Choose how we make it good</ButtonLink>
         ) : (
           <ButtonLink href={`/cases/${t.number}`}>Answer in your case</ButtonLink>

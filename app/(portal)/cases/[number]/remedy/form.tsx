@@ -3,7 +3,7 @@ import { useActionState } from "react";
 import { UNSENT, type FormState } from "@/app/_edge/form";
 import { Button } from "@/components/ui/button";
 import { ErrorSummary } from "@/components/ui/error-summary";
-import { Choice, ChoiceGroup } from "@/components/ui/field";
+import { Check, Choice, ChoiceGroup } from "@/components/ui/field";
 import { CautionStrip } from "@/components/ui/caution-strip";
 import { FREIGHT_TOLD, type FreightRule } from "@/lib/coverage/schema";
 import { chooseRemedy } from "../../../actions";
@@ -24,7 +24,7 @@ const WORDS: Record<string, [title: string, detail: string]> = {
 
 export function RemedyForm(p: {
   ticketId: string;
-  ticketUnitId: string;
+  units: { id: string; serial: string; what: string }[];
   remedies: string[];
   fees: string[];
   freight: FreightRule | null;
@@ -39,9 +39,37 @@ export function RemedyForm(p: {
         items={fields.length > 0 ? fields : state.message && !state.ok ? [{ message: state.message }] : []}
       />
       <input type="hidden" name="ticketId" value={p.ticketId} />
-      <input type="hidden" name="ticketUnitId" value={p.ticketUnitId} />
+      {p.units.length === 1 ? (
+        <input type="hidden" name="units[]" value={p.units[0]!.id} />
+      ) : (
+        <ChoiceGroup
+          legend="Which units"
+          name="units"
+          hint="They come back together, under one number."
+          error={state.fields?.lines?.[0]}
+        >
+          {p.units.map((u) => (
+            <Check
+              key={u.id}
+              name="units[]"
+              value={u.id}
+              title={
+                <>
+                  <span className="m">{u.serial}</span>, {u.what}
+                </>
+              }
+              defaultChecked
+            />
+          ))}
+        </ChoiceGroup>
+      )}
       <input type="hidden" name="battery" value={p.battery} />
-      <ChoiceGroup legend="Remedies your clause gives" name="remedy" error={state.fields?.remedy?.[0]} quiet>
+      <ChoiceGroup
+        legend={p.units.length === 1 ? "Remedies your clause gives" : "Remedies your clauses give"}
+        name="remedy"
+        error={state.fields?.remedy?.[0]}
+        quiet
+      >
         {p.remedies.map((r, i) => (
           <Choice
             key={r}

@@ -3,10 +3,12 @@ import { notFound, redirect } from "next/navigation";
 import { requireCustomer } from "@/app/_edge/ctx";
 import { LawAside } from "@/components/coverage/law-notice";
 import { Tag } from "@/components/ui/tag";
+import { capital, countWord, plural } from "@/lib/base/show";
 import { lawBeside } from "@/lib/coverage/law.queries";
 import { decisionsOf } from "@/lib/coverage/queries";
 import { rmasOfTicket } from "@/lib/rma/queries";
 import { ticketByNumber } from "@/lib/tickets/queries";
+import { standingOf, together } from "../standing";
 import { RemedyForm } from "./form";
 
 export const metadata: Metadata = { title: "Choose how we make it good" };
@@ -15,26 +17,47 @@ export default async function RemedyPage({ params }: { params: Promise<{ number:
   const ctx = await requireCustomer();
   const t = await ticketByNumber(ctx, Number((await params).number));
   if (!t) notFound();
-  const [rma] = await rmasOfTicket(ctx, t.id);
-  if (rma) redirect(`/rma/${rma.number}`);
-  const newest = (await decisionsOf(ctx, t.id)).at(-1);
-  const unit = t.units.find((u) => u.id === newest?.ticketUnitId);
-  if (!newest || !unit || (newest.answer.outcome !== "covered" && newest.answer.outcome !== "covered_doa"))
-    redirect(`/cases/${t.number}`);
-  const law = await lawBeside(ctx, newest.id);
+  const [decisions, rmas] = [await decisionsOf(ctx, t.id), await rmasOfTicket(ctx, t.id)];
+  const { now, later, remedies } = together(standingOf(t.units, decisions, rmas));
+  const [first] = now;
+  if (!first) redirect(rmas[0] ? `/rma/${rmas[0].number}` : `/cases/${t.number}`);
+  const law = await lawBeside(ctx, first.decision.id);
+  const batteries = now.map((s) => s.unit.answers.battery ?? "inside");
+  const freights = new Set(now.map((s) => s.decision.answer.handling?.freight ?? null));
   return (
     <>
       <p className="prow">
-        <Tag serial={unit.serial} />
+        {now.slice(0, 6).map((s) => (
+          <Tag key={s.unit.id} serial={s.unit.serial} />
+        ))}
+        {now.length > 6 ? <span>and {now.length - 6} more</span> : null}
       </p>
-      <h1>How shall we make it good?</h1>
+      <h1>How shall we make {now.length === 1 ? "it" : "them"} good?</h1>
+      {later > 0 ? (
+        <p>
+          Their clauses give the same remedies. {capital(countWord(later))} more{" "}
+          {plural(later, "has other ones: it comes", "have other ones: they come")} next.
+        </p>
+      ) : null}
       <RemedyForm
         ticketId={t.id}
-        ticketUnitId={unit.id}
-        remedies={newest.answer.remedies}
-        freight={newest.answer.handling?.freight ?? null}
-        fees={newest.answer.fees.map((f) => `${f.words} ${(f.cents / 100).toFixed(2)} EUR.`)}
-        battery={unit.answers.battery ?? "inside"}
+        units={now.map((s) => ({
+          id: s.unit.id,
+          serial: s.unit.serial,
+          what: s.unit.slot ? `${s.unit.slot}, ${s.unit.modelName}` : s.unit.modelName,
+        }))}
+        remedies={remedies}
+        freight={freights.size === 1 ? [...freights][0]! : null}
+        fees={[
+          ...new Set(
+            now.flatMap((s) =>
+              s.decision.answer.fees.map((f) => `${f.words} ${(f.cents / 100).toFixed(2)} EUR.`),
+            ),
+          ),
+        ]}
+        battery={
+          batteries.includes("damaged") ? "damaged" : batteries.every((b) => b === "none") ? "none" : "inside"
+        }
       />
       {law ? <LawAside notice={law} /> : null}
     </>
