@@ -31,7 +31,7 @@ const StartFromCheck = z.object({
     .min(3, "Tell us in a few words what you see.")
     .max(4000, "Keep it under 4 000 characters."),
   battery: z.enum(["none", "inside", "damaged"], { error: "Say whether a battery is damaged." }),
-  data: z.enum(["cleared", "sanitize"]).default("cleared"),
+  data: z.enum(["cleared", "sanitize"], { error: "Say who clears the data: nobody may assume it." }),
   personName: z.string().trim().max(200).default(""),
   personEmail: z
     .union([

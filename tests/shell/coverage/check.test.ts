@@ -316,6 +316,7 @@ describe("starting a report from the list", () => {
     faultClass: "failed_drive" as const,
     words: "They drop out of the array.",
     battery: "none" as const,
+    data: "cleared" as const,
     ...more,
   });
 
@@ -439,7 +440,13 @@ describe("starting a report from the list", () => {
         fields: { battery: [/./] },
       },
     });
-    for (const wrong of [{ unitIds: [] }, { words: " " }, { faultClass: "melted" }, { battery: undefined }])
+    for (const wrong of [
+      { unitIds: [] },
+      { words: " " },
+      { faultClass: "melted" },
+      { battery: undefined },
+      { data: undefined },
+    ])
       expect(
         await startFromCheck(as(s.sam), { ...(await form(["OW2210-PIN02"])), ...(wrong as object) }),
       ).toMatchObject({ ok: false, refusal: { code: "invalid" } });
