@@ -166,6 +166,15 @@ export async function storeDecision(
         "not_found",
         "This unit has no sale in the ledger, so there is nothing to decide by. Check the serial.",
       );
+    const [ticket] = await ctx.tx
+      .select({ accountId: tickets.accountId })
+      .from(tickets)
+      .where(eq(tickets.id, v.ticketId));
+    if (ticket?.accountId && ticket.accountId !== found.sale.accountId)
+      return refuse(
+        "rule",
+        `${found.unit.serial} is held by another customer now, so this ticket cannot decide about it.`,
+      );
     const of = factsIn(found, v.unitId);
     // Without these two, a part that was replaced would be judged by its system's clause, and a unit
     // that was credited or taken back by a sale that is over.
@@ -191,6 +200,7 @@ export async function storeDecision(
         and(
           eq(coverageDecisions.unitId, v.unitId),
           eq(coverageDecisions.saleLineId, found.sale.id),
+          eq(coverageDecisions.accountId, found.sale.accountId),
           ne(coverageDecisions.ticketId, v.ticketId),
           lte(coverageDecisions.claimOn, v.claimOn),
         ),

@@ -194,7 +194,7 @@ export async function goodwillOfTicket(ctx: Ctx, ticketId: string): Promise<Unit
         ${ref(sql`e.kind = case g.state when 'asked' then 'goodwill_asked' else 'goodwill_granted' end::entry_kind`)} as ref,
         g.asked_by_name as "askedByName", g.decision_id as "decisionId",
         coalesce(g.remedy, g.wanted_remedy)::text as remedy, coalesce(g.limit_cents, 0) as "limitCents",
-        (select r.number from entry e join rma r on r.id::text = e.data ->> 'rmaId'
+        (select r.number from entry e join rma r on r.id = (e.data ->> 'rmaId')::uuid
           where e.ticket_id = g.ticket_id and e.kind = 'rma_authorized'
             and e.data -> 'goodwill' @> jsonb_build_array(jsonb_build_object('goodwillId', g.id))
             and r.state not in ('withdrawn', 'expired', 'declined') limit 1) as "usedBy"

@@ -1,5 +1,7 @@
+import { and, inArray, isNull } from "drizzle-orm";
 import type { z } from "zod";
 import { transact } from "@/db/client";
+import { installations } from "@/db/schema/ledger";
 import { audit } from "@/lib/audit/commands";
 import { permit } from "@/lib/auth/rules";
 import { ok, type Result } from "@/lib/base/result";
@@ -20,7 +22,13 @@ function noted<I, V>(
     return transact(ctx, async (ctx) => {
       const done = await run(ctx, raw);
       if (!done.ok) return done;
-      const sales = salesOf(done.value);
+      const own = salesOf(done.value);
+      // Parts that were sold under them and stand elsewhere follow too.
+      const elsewhere = await ctx.tx
+        .selectDistinct({ id: installations.saleLineId })
+        .from(installations)
+        .where(and(inArray(installations.coverSaleLineId, own), isNull(installations.toOn)));
+      const sales = [...new Set([...own, ...elsewhere.flatMap((e) => (e.id ? [e.id] : []))])];
       const kept = await refreshCover(ctx, sales);
       if (!kept.ok) return kept;
       await audit(ctx, { act: "cover.follows", subject: ["sale_line", sales[0]!], after: { by: act } });

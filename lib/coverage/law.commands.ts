@@ -3,10 +3,12 @@ import { isUniqueViolation, transact } from "@/db/client";
 import { lawNotices } from "@/db/schema/coverage";
 import { audit } from "@/lib/audit/commands";
 import { permit } from "@/lib/auth/rules";
+import { civilDayIn } from "@/lib/base/civil";
 import { parse } from "@/lib/base/parse";
 import { ok, refuse, type Result } from "@/lib/base/result";
 import { showDay } from "@/lib/base/show";
 import { actorName, type Ctx } from "@/lib/ctx";
+import { env } from "@/lib/env";
 import { KeepLawNotice, REGION_WORDS } from "./law";
 
 /** Keeps a notice of rights by law, shown from its day on. What was shown before stays on record as it was. */
@@ -19,6 +21,11 @@ export async function keepLawNotice(
   const input = parse(KeepLawNotice, raw);
   if (!input.ok) return input;
   const v = input.value;
+  // What stood beside an old decision stays beside it: a notice begins today or later.
+  if (v.effectiveOn < civilDayIn(ctx.now, env().MENDBAY_ZONE)) {
+    const why = "A notice begins today or later: what was shown before stays as it was shown.";
+    return refuse("invalid", why, { fields: { effectiveOn: [why] } });
+  }
   try {
     return await transact(ctx, async (ctx) => {
       const noticeId = ctx.newId();

@@ -188,7 +188,7 @@ function groupBy<T extends { of: string }>(rows: T[]): Map<string, Omit<T, "of">
   return out;
 }
 
-type Standing = Pick<TreePart, "family" | "swaps" | "coverSaleLineId" | "givenOn" | "noticedOn">;
+type Standing = Pick<TreePart, "family" | "swaps" | "coverSaleLineId" | "givenOn" | "noticedOn" | "fromOn">;
 export type UnitFacts = { sale: SaleFact; clauses: ClauseFact[]; part: PartFact };
 
 /**
@@ -208,7 +208,7 @@ export function unitFacts(
       clauses: holder.clauses,
       part: { family, within: null, swaps: holder.swaps, originKnown: true },
     };
-  const { coverSaleLineId, givenOn, noticedOn } = standing;
+  const { coverSaleLineId, givenOn, noticedOn, fromOn } = standing;
   const part = { family: standing.family, within: "system" };
   if (coverSaleLineId === null)
     return {
@@ -229,7 +229,13 @@ export function unitFacts(
       ...origin.sale,
       buyerKind: holder.sale.buyerKind,
       country: holder.sale.country,
-      transfers: [...origin.sale.transfers, ...given],
+      // What became of its first system after it left is not about it; what becomes of this one is.
+      pauses: origin.sale.pauses.filter((p) => p.from <= fromOn),
+      transfers: [
+        ...origin.sale.transfers.filter((t) => t.on <= fromOn),
+        ...given,
+        ...holder.sale.transfers.filter((t) => t.on >= fromOn),
+      ],
     },
     clauses: origin.clauses,
     part: { ...part, swaps: [...origin.swaps, ...standing.swaps].sort(), originKnown: true },

@@ -103,7 +103,7 @@ const SAY: Record<ReasonFacts["rule"], Say> = {
       customer.push(`${terabytes(bytes)} TB written; the clause covers ${terabytes(limitBytes)}`);
     }
     return {
-      staff: `The log of this serial shows ${staff.join(" and ")}; whichever is reached first counts.`,
+      staff: `${f.words.log} shows ${staff.join(" and ")}; whichever is reached first counts.`,
       customer: `Its log shows ${customer.join(", and ")}.`,
     };
   },

@@ -119,28 +119,13 @@ function judge(input: DecideInput, windows: CoverWindow[]): Judgement {
         dates: { claimOn, shippedOn: sale.shippedOn },
       }),
     ]);
-  if (input.readings.serialMatches === false)
+  // A log of another drive raises a question only while there is cover to ask about.
+  const daysOver = windows.length > 0 && !windows.some((w) => claimOn <= w.lastOn);
+  if (input.readings.serialMatches === false && !daysOver)
     return person([
       reason("serial_differs", { source: "the log", words: { logSerial: input.readings.serial ?? "" } }),
     ]);
   if (!part.originKnown) return person([reason("sold_elsewhere", {})]);
-
-  const named = clauseFor(input.clauses, "cover", part, sale.condition);
-  if (!cover) {
-    const fittedOn = part.swaps.at(-1);
-    if (named && fittedOn)
-      return person([
-        reason("fitted_after_cover", {
-          clause: named.number,
-          source: "the as-built tree",
-          dates: { fittedOn },
-          words: { title: named.title },
-        }),
-      ]);
-    return person([
-      reason("no_clause", { source: "the terms", words: { family: part.family.replace("_", " ") } }),
-    ]);
-  }
 
   const reasons: Reason[] = [];
   const given = givenOn(sale, input.clauses, part, input.week, claimOn).filter((g) => g.on < claimOn);
@@ -158,16 +143,35 @@ function judge(input: DecideInput, windows: CoverWindow[]): Judgement {
     );
     if (!over && (g.state === "unnamed" || g.state === "notice_open")) return person(reasons);
     if (!over && (g.state === "first_buyer" || g.state === "not_noticed"))
-      return answer(input, "not_covered", cover, reasons);
+      return answer(input, "not_covered", cover ?? doa, reasons);
   }
 
+  const named = clauseFor(input.clauses, "cover", part, sale.condition);
   const inDoa = doa !== null && claimOn <= doa.lastOn;
-  const inCover = claimOn <= cover.lastOn;
-  const active = inDoa ? doa : cover;
-  reasons.push(dateReason(input, active));
-  if (!inDoa && !inCover) return answer(input, "not_covered", cover, reasons);
+  // Terms that give the first days and nothing after, "as is": then their window decides.
+  const asIs = doa !== null && !input.clauses.some((c) => c.kind === "cover");
+  if (!cover && !inDoa && !asIs) {
+    const fittedOn = part.swaps.at(-1);
+    if (named && fittedOn)
+      return person([
+        reason("fitted_after_cover", {
+          clause: named.number,
+          source: "the as-built tree",
+          dates: { fittedOn },
+          words: { title: named.title },
+        }),
+      ]);
+    return person([
+      reason("no_clause", { source: "the terms", words: { family: part.family.replace("_", " ") } }),
+    ]);
+  }
 
-  const clause = input.clauses.find((c) => c.id === cover.clauseId);
+  const inCover = cover !== null && claimOn <= cover.lastOn;
+  const active = (inDoa ? doa : (cover ?? doa))!;
+  reasons.push(dateReason(input, active));
+  if (!inDoa && !inCover) return answer(input, "not_covered", active, reasons);
+
+  const clause = input.clauses.find((c) => c.id === cover?.clauseId);
   const { limitHours, limitBytes } = limitsOf(clause);
   const { powerOnHours: hours, bytesWritten: bytes, serialMatches } = input.readings;
   const read = (limitHours !== null && hours !== undefined) || (limitBytes !== null && bytes !== undefined);
@@ -178,10 +182,10 @@ function judge(input: DecideInput, windows: CoverWindow[]): Judgement {
         clause: clause?.number,
         source: "the log",
         numbers: { hours, limitHours, bytes, limitBytes },
-        words: { serial: input.readings.serial ?? "" },
+        words: { log: serialMatches === true ? "The log of this serial" : "A log that names no serial" },
       }),
     );
-    if (past && !inDoa) {
+    if (past && !inDoa && cover) {
       if (serialMatches === true) return answer(input, "not_covered", cover, reasons);
       return person([
         ...reasons.slice(0, -1),
@@ -190,7 +194,11 @@ function judge(input: DecideInput, windows: CoverWindow[]): Judgement {
     }
   }
 
-  for (const { name, clause, asked } of exclusionsFor(input)) {
+  // What is shown comes before what is only asked: an open question never hides an answer.
+  const exclusions = exclusionsFor(input).sort(
+    (a, b) => Number(input.established.includes(b.name)) - Number(input.established.includes(a.name)),
+  );
+  for (const { name, clause, asked } of exclusions) {
     const facts = {
       clause: clause.number,
       source: "the evidence on record",

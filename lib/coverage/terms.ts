@@ -1,3 +1,4 @@
+import { forbiddenIn } from "./law";
 import { addDays, isDay } from "../base/civil";
 import { parsePeriod } from "../base/period";
 import { showDay } from "../base/show";
@@ -146,6 +147,13 @@ function ownProblems(c: TermsClause): [field: ClauseField, message: string][] {
   if (c.title.trim() === "") no("title", "Say in a few words what the clause is about.");
   else if (c.title.length > BOUNDS.title) no("title", `Keep it within ${BOUNDS.title} characters.`);
   if (c.words.length > BOUNDS.words) no("words", `Keep it within ${BOUNDS.words} characters.`);
+
+  const takes = forbiddenIn(`${c.title}. ${c.words}`);
+  if (takes)
+    no(
+      "words",
+      `“${takes}” takes away what the law may give. Write “under our warranty” and leave the law beside it.`,
+    );
 
   const stranger = c.families.find((f) => !FAMILIES.includes(f as Family));
   if (stranger === "") no("families", "Tick the parts it is for, or choose every part.");

@@ -289,6 +289,13 @@ export async function replaceSystem(
       endedReason: null,
       createdAt: ctx.now,
     });
+    // Its pauses and who it was given on to are facts of the sale, and go along.
+    await ctx.tx.execute(sql`insert into cover_pause (id, sale_line_id, from_on, to_on, reason)
+      select gen_random_uuid(), ${saleLineId}, from_on, to_on, reason from cover_pause where sale_line_id = ${sale.id}`);
+    await ctx.tx.execute(sql`insert into sale_transfer
+        (id, sale_line_id, from_account_id, to_account_id, on_day, noticed_on, created_at)
+      select gen_random_uuid(), ${saleLineId}, from_account_id, to_account_id, on_day, noticed_on, created_at
+        from sale_transfer where sale_line_id = ${sale.id}`);
     // What stands in the new unit stands under the sale it took over.
     await ctx.tx
       .update(installations)

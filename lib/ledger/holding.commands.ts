@@ -1,14 +1,29 @@
-import { and, asc, eq, isNull, sql } from "drizzle-orm";
+import { and, asc, eq, isNotNull, isNull, or, sql } from "drizzle-orm";
 import type { z } from "zod";
 import { accounts, coverPauses, installations, saleLines, saleTransfers, units } from "@/db/schema/ledger";
+import { tickets, ticketUnits } from "@/db/schema/tickets";
 import { transact } from "@/db/client";
 import { audit } from "@/lib/audit/commands";
 import { permit } from "@/lib/auth/rules";
+import { civilDayIn, daysBetween } from "@/lib/base/civil";
 import { parse } from "@/lib/base/parse";
 import { ok, refuse, type Result } from "@/lib/base/result";
 import { showDay } from "@/lib/base/show";
 import type { Ctx, TxCtx } from "@/lib/ctx";
+import { env } from "@/lib/env";
 import { GiveOn, MovePart, NoteNotice, PauseCover } from "./schema";
+
+/** What is noted has happened: a day to come would bring cover that nobody has yet. */
+function notToCome(ctx: Ctx, days: Record<string, string | null | undefined>): Result<undefined> {
+  const today = civilDayIn(ctx.now, env().MENDBAY_ZONE);
+  for (const [field, day] of Object.entries(days))
+    if (day && day > today) {
+      const why = `${showDay(day)} is still to come. Note it when it has happened.`;
+      return refuse("invalid", why, { fields: { [field]: [why] } });
+    }
+  return ok();
+}
+const LONGEST_PAUSE = 366;
 
 async function openSaleOf(ctx: TxCtx, unitId: string) {
   const [sale] = await ctx.tx
@@ -32,6 +47,8 @@ export async function giveOn(
   const input = parse(GiveOn, raw);
   if (!input.ok) return input;
   const { unitId, accountCode, onDay, noticedOn } = input.value;
+  const happened = notToCome(ctx, { onDay, noticedOn });
+  if (!happened.ok) return happened;
   return transact(ctx, async (ctx) => {
     const sale = await openSaleOf(ctx, unitId);
     if (!sale)
@@ -52,6 +69,26 @@ export async function giveOn(
         {
           fields: { onDay: [`It was shipped on ${showDay(sale.shippedOn)}; it cannot be given on before.`] },
         },
+      );
+    // Its claims are its holder's: they end before it changes hands, or two customers share a record.
+    const [claim] = await ctx.tx
+      .select({ number: tickets.number })
+      .from(ticketUnits)
+      .innerJoin(tickets, eq(tickets.id, ticketUnits.ticketId))
+      .where(
+        and(
+          or(eq(ticketUnits.unitId, unitId), eq(ticketUnits.systemUnitId, unitId)),
+          eq(ticketUnits.state, "tied"),
+          eq(tickets.accountId, sale.accountId),
+          isNull(tickets.closedAt),
+        ),
+      )
+      .limit(1);
+    if (claim)
+      return refuse(
+        "conflict",
+        `Ticket ${claim.number} is open about it. Settle or close that first; then note who holds it.`,
+        { details: { ticketNumber: claim.number } },
       );
     const transferId = ctx.newId();
     await ctx.tx.insert(saleTransfers).values({
@@ -87,7 +124,31 @@ export async function noteNotice(
   const input = parse(NoteNotice, raw);
   if (!input.ok) return input;
   const { unitId, noticedOn } = input.value;
+  const happened = notToCome(ctx, { noticedOn });
+  if (!happened.ok) return happened;
   return transact(ctx, async (ctx) => {
+    // A part that came from another customer's system has its notice where it stands.
+    const [place] = await ctx.tx
+      .select()
+      .from(installations)
+      .where(
+        and(
+          eq(installations.unitId, unitId),
+          isNull(installations.toOn),
+          isNotNull(installations.givenOn),
+          isNull(installations.noticedOn),
+        ),
+      )
+      .for("update");
+    if (place?.saleLineId) {
+      if (noticedOn < place.givenOn!)
+        return refuse("invalid", "The notice cannot come before the day it was given on.", {
+          fields: { noticedOn: [`It was given on on ${showDay(place.givenOn!)}.`] },
+        });
+      await ctx.tx.update(installations).set({ noticedOn }).where(eq(installations.id, place.id));
+      await audit(ctx, { act: "ledger.notice", subject: ["unit", unitId], after: { noticedOn } });
+      return ok({ saleLineId: place.saleLineId });
+    }
     const sale = await openSaleOf(ctx, unitId);
     const [open] = sale
       ? await ctx.tx
@@ -121,6 +182,8 @@ export async function movePart(
   const input = parse(MovePart, raw);
   if (!input.ok) return input;
   const { partUnitId, toUnitId, slot, onDay, noticedOn } = input.value;
+  const happened = notToCome(ctx, { onDay, noticedOn });
+  if (!happened.ok) return happened;
   return transact(ctx, async (ctx) => {
     const [from] = await ctx.tx
       .select()
@@ -137,6 +200,17 @@ export async function movePart(
       return refuse("invalid", `It stands where it is since ${showDay(from.fromOn)}.`, {
         fields: { onDay: [`It stands where it is since ${showDay(from.fromOn)}; give a day from then on.`] },
       });
+    const [inside] = await ctx.tx
+      .select({ serial: units.serial, slot: installations.slot })
+      .from(installations)
+      .innerJoin(units, eq(units.id, installations.unitId))
+      .where(and(eq(installations.parentUnitId, partUnitId), isNull(installations.toOn)))
+      .limit(1);
+    if (inside)
+      return refuse(
+        "rule",
+        `${inside.serial} stands in it (${inside.slot}). Note first where the parts in it go; then move it.`,
+      );
     const [taken] = await ctx.tx
       .select({ serial: units.serial })
       .from(installations)
@@ -197,6 +271,12 @@ export async function pauseCover(
   const input = parse(PauseCover, raw);
   if (!input.ok) return input;
   const { unitId, from, to, reason } = input.value;
+  const happened = notToCome(ctx, { from, to });
+  if (!happened.ok) return happened;
+  if (daysBetween(from, to) >= LONGEST_PAUSE) {
+    const why = `A pause of more than ${LONGEST_PAUSE} days is no pause. Note it year by year, with the reason of each.`;
+    return refuse("invalid", why, { fields: { to: [why] } });
+  }
   return transact(ctx, async (ctx) => {
     const sale = await openSaleOf(ctx, unitId);
     if (!sale) return refuse("rule", "This unit has no open sale of its own; pause the system it stands in.");

@@ -125,13 +125,18 @@ export const GiveOn = z
     message: "The notice cannot come before the day it was given on.",
   });
 export const NoteNotice = z.object({ unitId: z.uuid(), noticedOn: CivilDay });
-export const MovePart = z.object({
-  partUnitId: z.uuid(),
-  toUnitId: z.uuid(),
-  slot: z.string().trim().min(1, "Name the slot it stands in now.").max(60),
-  onDay: CivilDay,
-  noticedOn: CivilDay.nullish(),
-});
+export const MovePart = z
+  .object({
+    partUnitId: z.uuid(),
+    toUnitId: z.uuid(),
+    slot: z.string().trim().min(1, "Name the slot it stands in now.").max(60),
+    onDay: CivilDay,
+    noticedOn: CivilDay.nullish(),
+  })
+  .refine((v) => !v.noticedOn || v.noticedOn >= v.onDay, {
+    path: ["noticedOn"],
+    message: "The notice cannot come before the day it was moved.",
+  });
 export const PauseCover = z
   .object({
     unitId: z.uuid(),

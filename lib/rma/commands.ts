@@ -145,7 +145,8 @@ export async function authorizeRma(
           if (grant.ok) grants.set(l.id, grant.value);
           else if (d.outcome === "not_covered") return grant;
         }
-        if (covers && !d.remedies.includes(v.remedy))
+        // Where a person decides, what the clause gives is still the most they may give without goodwill.
+        if (!grants.has(l.id) && !d.remedies.includes(v.remedy))
           return refuse(
             "rule",
             `The clause does not give ${REMEDY_WORDS[v.remedy]} for ${l.serial}. Choose one it gives.`,

@@ -366,7 +366,7 @@ export async function takeDecision(
       ? undefined
       : (
           await ctx.tx
-            .select({ n: sql<number>`count(*)::int` })
+            .select({ n: sql<number>`count(distinct ${photos.id})::int` })
             .from(rmaLines)
             .innerJoin(rmas, eq(rmas.id, rmaLines.rmaId))
             .leftJoin(receiptLines, eq(receiptLines.rmaLineId, rmaLines.id))
@@ -378,7 +378,13 @@ export async function takeDecision(
       .select({ number: rmas.number })
       .from(rmaLines)
       .innerJoin(rmas, eq(rmas.id, rmaLines.rmaId))
-      .where(and(eq(rmaLines.unitId, tied.unitId), sql`${rmaLines.state} in ('open','received','tested')`));
+      .where(
+        and(
+          eq(rmaLines.unitId, tied.unitId),
+          sql`${rmaLines.state} in ('open','received','tested')`,
+          ticket.accountId ? eq(rmas.accountId, ticket.accountId) : undefined,
+        ),
+      );
     const stored = await storeDecision(ctx, {
       ticketId: v.ticketId,
       ticketUnitId: tied.id,

@@ -86,6 +86,21 @@ describe("a unit given on to another company", () => {
     ).toMatchObject({ ok: false, refusal: { fields: { noticedOn: [expect.any(String)] } } });
   });
 
+  it("waits until the claims of its holder are closed", async () => {
+    await sell([system("OW2210-GIVE2", { order: "ORD-8102" })]);
+    const d = await decided(s, "OW2210-GIVE2", { fault: "no_power" });
+    expect(
+      await noteGivenOn(as(s.agent), {
+        unitId: await unitId("OW2210-GIVE2"),
+        accountCode: "LOWMERE",
+        onDay: "2026-05-04",
+      }),
+    ).toMatchObject({
+      ok: false,
+      refusal: { code: "conflict", message: expect.stringContaining(`Ticket ${d.number} is open`) as string },
+    });
+  });
+
   it("takes its notice once", async () => {
     const unit = { unitId: await unitId("OW2210-GIVE1") };
     must(await noteTransferNotice(as(s.agent), { ...unit, noticedOn: "2026-05-20" }));
@@ -224,6 +239,40 @@ describe("cover that rests", () => {
     expect(await lastOf("OW2210-PIN01")).toBe("2029-01-15");
     await agree("OW2210-PIN01");
     expect((await coverSummaries(job(), [unit], "2026-06-03")).get(unit)?.lastOn).toBe("2029-01-15");
+  });
+
+  it("goes along when a whole unit takes over the sale", async () => {
+    await sell([system("OW2210-REST1", { order: "ORD-8401" })]);
+    must(
+      await notePause(as(s.agent), {
+        unitId: await unitId("OW2210-REST1"),
+        from: "2026-03-01",
+        to: "2026-03-10",
+        reason: "at our bench",
+      }),
+    );
+    const before = await lastOf("OW2210-REST1");
+    await stock("OW2210-REST2", SERVER);
+    must(
+      await replaceSystem(job(), {
+        oldUnitId: await unitId("OW2210-REST1"),
+        newUnitId: await unitId("OW2210-REST2"),
+        onDay: "2026-05-04",
+      }),
+    );
+    expect([before, await lastOf("OW2210-REST2")]).toEqual(["2029-01-15", "2029-01-15"]);
+  });
+
+  it("is refused for days to come, and for longer than a pause is", async () => {
+    const unit = { unitId: await unitId("OW2210-PIN01"), reason: "at our bench" };
+    expect(await notePause(as(s.agent), { ...unit, from: "2026-05-01", to: "2031-05-01" })).toMatchObject({
+      ok: false,
+      refusal: { fields: { to: [expect.stringContaining("still to come")] } },
+    });
+    expect(await notePause(as(s.agent), { ...unit, from: "2025-01-01", to: "2026-05-01" })).toMatchObject({
+      ok: false,
+      refusal: { fields: { to: [expect.stringContaining("366 days")] } },
+    });
   });
 
   it("is refused where it ends before it starts, or lies before the sale", async () => {

@@ -27,17 +27,21 @@ const OURS = {
 
 describe("a notice that an admin keeps", () => {
   it("is shown from its day, stays as it was kept, and is on record", async () => {
-    must(await keepLawNotice(as(s.admin), OURS));
+    must(await keepLawNotice(as(s.admin, at("2026-02-02T10:00:00Z")), OURS));
     const shown = (onDay: string) => lawNotice(as(s.dana), { country: "DE", buyerKind: "business", onDay });
     expect((await shown("2026-02-28")).title).toBe("Business purchases in the European Union");
     expect(await shown("2026-03-01")).toEqual(OURS);
-    expect(await keepLawNotice(as(s.admin), OURS)).toMatchObject({
+    expect(await keepLawNotice(as(s.admin, at("2026-02-02T10:00:00Z")), OURS)).toMatchObject({
       ok: false,
       refusal: { code: "conflict", fields: { effectiveOn: [expect.stringContaining("1 March 2026")] } },
     });
     expect(await keepLawNotice(as(s.manager), { ...OURS, effectiveOn: "2026-04-01" })).toMatchObject({
       ok: false,
       refusal: { code: "forbidden" },
+    });
+    expect(await keepLawNotice(as(s.admin), { ...OURS, forConsumers: true })).toMatchObject({
+      ok: false,
+      refusal: { fields: { effectiveOn: [expect.stringContaining("today or later")] } },
     });
     await expect(rows(sql`update law_notice set words = 'x' returning id`)).rejects.toMatchObject({
       cause: { message: expect.stringContaining("never rewritten") as string },

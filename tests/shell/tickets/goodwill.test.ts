@@ -83,8 +83,11 @@ const decline = (goodwillId: string, decisionId: string, who: Actor = s.manager)
     answer: "declined",
     words: "It was opened by others.",
   });
-const authorize = (c: Case, remedy: "repair" | "credit" = "repair", who: Actor = s.agent) =>
-  authorizeRma(then(who), { ticketId: c.ticketId, lines: [{ ticketUnitId: c.ticketUnitId }], remedy });
+const authorize = (
+  c: Case,
+  remedy: "repair" | "credit" | "replacement_on_receipt" = "repair",
+  who: Actor = s.agent,
+) => authorizeRma(then(who), { ticketId: c.ticketId, lines: [{ ticketUnitId: c.ticketUnitId }], remedy });
 const again = async (c: Case, more = {}) =>
   must(
     await takeDecision(then(s.agent), {
@@ -334,10 +337,11 @@ describe("authorizing what is not covered", () => {
     must(await ask(c, { reason: "It failed again within a week of the repair." }));
   });
 
-  it("leaves what a person must decide as it was, and marks it where goodwill was granted", async () => {
+  it("lets a person give what the clause gives, and more only where goodwill was granted", async () => {
     const d = await decided(s, "VS19-PIN0A", { fault: "physical_damage" });
     const c = { ...d, serial: "VS19-PIN0A" };
-    const plain = must(await authorize(c));
+    expect(await authorize(c, "repair")).toMatchObject(refused("rule", /does not give repair/));
+    const plain = must(await authorize(c, "replacement_on_receipt"));
     must(await withdrawRma(then(s.agent), { rmaId: plain.rmaId }));
     const { goodwillId } = must(await ask(c));
     must(await grant(goodwillId, d.decisionId));
@@ -346,7 +350,7 @@ describe("authorizing what is not covered", () => {
       sql`select line from entry where ticket_id = ${c.ticketId} and kind = 'rma_authorized' order by seq`,
     );
     expect(lines).toEqual([
-      { line: `${plain.number} authorized: repair` },
+      { line: `${plain.number} authorized: replacement on receipt` },
       { line: `${marked.number} authorized: repair, by goodwill, C3` },
     ]);
     must(await withdrawRma(then(s.agent), { rmaId: marked.rmaId }));
